@@ -131,6 +131,8 @@ export async function up(knex: Knex): Promise<void> {
          where m.person_id = person and m.ended_at is null order by s.name $$;
     create function scope.invitation_shop(hash bytea) returns uuid language sql stable security definer set search_path = public as
       $$ select shop_id from invitations where token_hash = hash $$;
+    create function scope.shop_name(shop uuid) returns text language sql stable security definer set search_path = public as
+      $$ select name from shops where id = shop $$;
     create function scope.shop_ids() returns setof uuid language sql stable security definer set search_path = public as
       $$ select id from shops $$;
     create function scope.found_shop(shop_name text, shop_currency text, founder uuid) returns uuid language plpgsql security definer set search_path = public as $$

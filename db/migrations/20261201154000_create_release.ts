@@ -170,8 +170,8 @@ export async function up(knex: Knex): Promise<void> {
       $$ insert into mail_outbox (shop_id, once_key, to_address, reply_to, subject, text_body, html_body)
          values (shop, once, recipient, reply, mail_subject, body_text, body_html)
          on conflict (once_key) do nothing returning id $$;
-    create function scope.unsent_mail(how_many integer) returns setof mail_outbox language sql security definer set search_path = public as
-      $$ select * from mail_outbox where sent_at is null and attempts < 12 order by created_at limit how_many for update skip locked $$;
+    create function scope.take_mail(mail uuid) returns setof mail_outbox language sql security definer set search_path = public as
+      $$ select * from mail_outbox where id = mail and sent_at is null for update $$;
     create function scope.mail_sent(mail uuid) returns void language sql security definer set search_path = public as
       $$ update mail_outbox set sent_at = now(), attempts = attempts + 1, last_error = null where id = mail $$;
     create function scope.mail_failed(mail uuid, error text) returns void language sql security definer set search_path = public as
@@ -196,6 +196,7 @@ export async function up(knex: Knex): Promise<void> {
 
 export async function down(knex: Knex): Promise<void> {
   await knex.raw(`
+    drop function scope.take_mail(uuid);
     drop table mail_outbox, recalls, corrections, acknowledgements, packet_fetches, packets, concessions, decisions, proposals cascade;
     drop function scope.queue_mail(uuid, text, text, text, text, text, text);
     drop function scope.mail_sent(uuid);

@@ -1,0 +1,26 @@
+import { env } from "#app/env.server.ts";
+
+const store = new URL(env.S3_PUBLIC_ENDPOINT).origin;
+const github = new URL(env.GITHUB_AUTHORIZE_URL).origin;
+
+/**
+ * What a page may load. The store is named since files travel between it and the browser;
+ * WebAssembly hashes uploads and unpacks view meshes; the sign-in form is answered by a
+ * redirect to GitHub, which browsers count as a form's target.
+ */
+export function contentSecurityPolicy(nonce: string): string {
+  return [
+    "default-src 'none'",
+    `script-src 'self' 'nonce-${nonce}' 'wasm-unsafe-eval'`,
+    "style-src 'self'",
+    `img-src 'self' data: blob: ${store}`,
+    `connect-src 'self' blob: data: ${store}`,
+    "font-src 'self'",
+    "worker-src 'self' blob:",
+    "manifest-src 'self'",
+    `form-action 'self' ${github}`,
+    "frame-ancestors 'none'",
+    "base-uri 'none'",
+    "object-src 'none'",
+  ].join("; ");
+}

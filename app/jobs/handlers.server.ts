@@ -1,0 +1,11 @@
+import type { JobPayload, QueueName } from "./queues.ts";
+import { sendMail } from "./send-mail.server.ts";
+import { sweep } from "./sweep.server.ts";
+
+/** Does one job. A handler may run twice for one job (the queue promises at least once) and must not mind. */
+export type Handler = (job: JobPayload, stopping: AbortSignal) => Promise<void>;
+
+export const handlers: Partial<Record<QueueName, Handler>> = {
+  "send-mail": sendMail,
+  sweep,
+};

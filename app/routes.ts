@@ -1,0 +1,22 @@
+import { index, layout, prefix, route, type RouteConfig } from "@react-router/dev/routes";
+
+// Every URL of the product, by hand, in one place. Signed-in pages share one layout.
+export default [
+  route("sign-in", "routes/sign-in.tsx"),
+  route("sign-in/link/:token", "routes/sign-in-link.tsx"),
+  route("sign-out", "routes/sign-out.tsx"),
+  route("preferences", "routes/preferences.tsx"),
+  route("health", "routes/health.ts"),
+
+  layout("routes/signed-in.tsx", [
+    index("routes/today.tsx"),
+    ...prefix("jobs", [
+      index("routes/jobs.tsx"),
+      route("new", "routes/job-new.tsx"),
+    ]),
+  ]),
+
+  ...prefix("api", [
+    route("events", "routes/api-events.ts"),
+  ]),
+] satisfies RouteConfig;
