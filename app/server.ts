@@ -14,7 +14,7 @@ const origin = new URL(env.APP_ORIGIN);
 
 const app = express();
 app.disable("x-powered-by");
-app.set("trust proxy", env.TRUST_PROXY);
+app.set("trust proxy", env.TRUSTED_PROXIES);
 app.use(compression({ filter: (request, response) => !String(response.getHeader("Content-Type")).startsWith("text/event-stream") && compression.filter(request, response) }));
 app.use((request, response, next) => {
   response.set({

@@ -1,6 +1,7 @@
 import { env } from "#app/env.server.ts";
 
-const store = new URL(env.S3_PUBLIC_ENDPOINT).origin;
+// Without an endpoint the SDK goes to the region's own address.
+const store = env.S3_PUBLIC_ENDPOINT ? new URL(env.S3_PUBLIC_ENDPOINT).origin : `https://*.amazonaws.com`;
 const github = new URL(env.GITHUB_AUTHORIZE_URL).origin;
 
 /**

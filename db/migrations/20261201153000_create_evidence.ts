@@ -30,12 +30,14 @@ export async function up(knex: Knex): Promise<void> {
       scale_z numeric not null default 1,
       printed_on date not null default current_date,
       note text not null default '',
+      spoiled text,
       ${signedBy},
       unique (revision_id, ordinal), ${revisionKeys},
       foreign key (shop_id, preset_id) references print_presets (shop_id, id),
       foreign key (shop_id, file_id) references files (shop_id, id)
     );
-    comment on column prints.model_sha256 is 'hash of the STEP (or, without one, the STL) of the revision when it was printed';
+    comment on column prints.model_sha256 is 'hash of the file it was sliced from';
+    comment on column prints.spoiled is 'why it does not count (warped, wrong material), when it does not';
 
     create table print_proves (
       shop_id uuid not null,
@@ -67,7 +69,7 @@ export async function up(knex: Knex): Promise<void> {
       fit_check_id uuid not null,
       characteristic_id uuid not null,
       readings_mm numeric[] not null default '{}',
-      answer boolean,
+      answers boolean[] not null default '{}',
       instrument_id uuid,
       uncertainty_mm numeric,
       band_position_mm numeric,
@@ -98,8 +100,12 @@ export async function up(knex: Knex): Promise<void> {
     create table carry_overs (${ofRevision}
       characteristic_id uuid not null,
       from_revision_id uuid not null,
-      basis text not null check (basis in ('same-model', 'declared')),
+      basis text not null check (basis in ('same-model', 'declared-unchanged', 'computed')),
       reason text not null default '',
+      from_model_sha256 text not null,
+      model_sha256 text not null,
+      distance_mm numeric,
+      allowed_mm numeric,
       ${signedBy},
       unique (shop_id, revision_id, characteristic_id), ${revisionKeys},
       foreign key (shop_id, characteristic_id) references characteristics (shop_id, id),
@@ -113,12 +119,11 @@ export async function up(knex: Knex): Promise<void> {
       result jsonb not null,
       verdict text not null check (verdict in ('pass', 'fail', 'information')),
       model_sha256 text,
-      outside_approval text,
+      hazard text not null default 'none' check (hazard in ('none', 'pressure', 'burst')),
       removed_at timestamptz,
       ${signedBy}, ${revisionKeys}
     );
     comment on column calculations.model_sha256 is 'the model it was computed for; another model makes it stale';
-    comment on column calculations.outside_approval is 'who outside approved a failed pressure or burst calculation';
 
     create table instructions (
       shop_id uuid not null,
@@ -139,43 +144,50 @@ export async function up(knex: Knex): Promise<void> {
     );
     create table instruction_holes (${ofRevision}
       ordinal integer not null,
-      kind text not null check (kind in ('through', 'blind')),
-      diameter_mm numeric not null,
-      depth_mm numeric not null,
-      at_mm numeric[] not null,
-      axis numeric[] not null,
-      entry text not null,
-      treatment text not null check (treatment in ('', 'tap', 'clearance', 'ream', 'leave')),
+      label text not null,
+      holes integer[] not null,
+      treatment text check (treatment in ('tap', 'clearance', 'ream', 'leave')),
       spec text not null default '',
       unique (shop_id, revision_id, ordinal), ${revisionKeys}
     );
-    comment on column instruction_holes.treatment is 'what the machinist does with the hole; empty until it is stated';
+    comment on column instruction_holes.holes is 'indices into the holes that the measure of the STEP lists; alike holes stand together';
 
-    create table machinist_answers (${ofRevision}
-      answers jsonb not null,
-      agrees boolean not null,
-      objection text not null default '',
+    create table machinist_replies (${ofRevision}
+      model_sha256 text not null,
       price_minor bigint check (price_minor >= 0),
       ready_on date,
-      ${signedBy},
-      closed_at timestamptz,
-      closed_by uuid references people (id),
-      closing_note text not null default '',
-      recorded_how text, ${revisionKeys},
-      check (agrees or objection <> '')
+      remark text not null default '',
+      recorded_how text,
+      ${signedBy}, ${revisionKeys}
     );
-    comment on column machinist_answers.recorded_how is 'text, call or e-mail, where the shop recorded what the machinist said';
+    comment on column machinist_replies.recorded_how is 'text, call or e-mail, where the shop recorded what the machinist said';
+    create table machinist_answers (${ofRevision}
+      reply_id uuid not null,
+      question_id uuid,
+      stance text not null check (stance in ('agree', 'object')),
+      text text not null default '',
+      closed_by_name text,
+      closed_how text,
+      closed_at timestamptz, ${revisionKeys},
+      foreign key (shop_id, reply_id) references machinist_replies (shop_id, id),
+      foreign key (shop_id, question_id) references makeability_questions (shop_id, id),
+      check (stance = 'agree' or text <> '')
+    );
 
     create table customer_answers (${ofRevision}
       answer text not null check (answer in ('approved', 'refused', 'reconfirmed')),
       reason text not null default '',
+      model_sha256 text not null,
+      since_answer_id uuid,
+      changes_seen boolean not null default false,
       ${signedBy},
-      recorded_how text check (recorded_how in ('text', 'call', 'e-mail', 'in person')),
+      recorded_how text check (recorded_how in ('text-message', 'e-mail', 'call', 'in-person', 'letter')),
       recorded_by_name text,
       said_on date,
       picture_file_id uuid,
       ${revisionKeys},
       foreign key (shop_id, picture_file_id) references files (shop_id, id),
+      foreign key (shop_id, since_answer_id) references customer_answers (shop_id, id),
       check (answer <> 'refused' or reason <> ''),
       check ((recorded_how is null) = (recorded_by_name is null))
     );
@@ -207,8 +219,9 @@ export async function up(knex: Knex): Promise<void> {
 
     create table caution_reads (${ofRevision}
       caution text not null,
+      basis text not null,
       ${signedBy},
-      unique (shop_id, revision_id, caution), ${revisionKeys}
+      unique (shop_id, revision_id, caution, basis), ${revisionKeys}
     );
 
     create index fit_checks_print on fit_checks (shop_id, print_id);
@@ -220,7 +233,7 @@ export async function up(knex: Knex): Promise<void> {
   `);
   const sealed = [
     "prints", "print_proves", "fit_checks", "fit_results", "fit_photos", "carry_overs", "calculations",
-    "instructions", "instruction_holes", "machinist_answers", "customer_answers", "caution_reads",
+    "instructions", "instruction_holes", "machinist_replies", "machinist_answers", "customer_answers", "caution_reads",
   ];
   for (const table of sealed) {
     await protect(knex, table, { byJob: true });
@@ -232,7 +245,7 @@ export async function up(knex: Knex): Promise<void> {
 
 export async function down(knex: Knex): Promise<void> {
   await knex.raw(`
-    drop table caution_reads, callout_replies, callouts, customer_answers, machinist_answers, instruction_holes, instructions,
+    drop table caution_reads, callout_replies, callouts, customer_answers, machinist_answers, machinist_replies, instruction_holes, instructions,
       calculations, carry_overs, fit_photos, fit_results, fit_checks, print_proves, prints cascade;
   `);
 }

@@ -61,7 +61,7 @@ export async function up(knex: Knex): Promise<void> {
       reason text not null check (reason <> ''),
       limit_pieces integer check (limit_pieces > 0),
       limit_until date,
-      outside_approval text,
+      outside_approval jsonb,
       by_person_id uuid not null references people (id),
       by_name text not null,
       at timestamptz not null default now(),
