@@ -10,11 +10,15 @@ export default [
 
   layout("routes/signed-in.tsx", [
     index("routes/today.tsx"),
-    ...prefix("jobs", [
-      index("routes/jobs.tsx"),
-      route("new", "routes/job-new.tsx"),
-    ]),
+
+    // Customers
+    route("customers", "routes/customers.tsx"),
+    route("customers/new", "routes/customer.tsx", { id: "customer-new" }),
+    route("customers/:customerId", "routes/customer.tsx"),
   ]),
+
+  // Tables as files
+  route("customers.csv", "routes/customers-csv.ts"),
 
   ...prefix("api", [
     route("events", "routes/api-events.ts"),
