@@ -87,29 +87,39 @@ export async function untilReady(handle, isReady, { patienceMs = 60_000, everyMs
   }
 }
 
+/** Commands under way, so that an interrupted launcher can end them too. */
+const underWay = new Set();
+
+/** Ends every command that `runToEnd` still waits for. */
+export async function endCommandsUnderWay(options) {
+  await Promise.all([...underWay].map((identity) => endProcess(identity, options)));
+}
+
 /**
  * Runs a command to its end.
  *
  * @param {{ command: string, args?: string[], env?: NodeJS.ProcessEnv, cwd?: string, input?: string,
- *   show?: boolean, account?: { uid: number, gid: number }, signal?: AbortSignal }} what
+ *   show?: boolean, account?: { uid: number, gid: number } }} what
  *   `show` lets it write to our terminal; otherwise its output is returned
  * @returns {Promise<{ code: number | null, signal: string | null, output: string }>}
  */
-export function runToEnd({ command, args = [], env = process.env, cwd, input, show = false, account, signal }) {
+export function runToEnd({ command, args = [], env = process.env, cwd, input, show = false, account }) {
   return new Promise((resolve, reject) => {
-    const child = spawn(command, args, { cwd, env, stdio: [input === undefined ? "ignore" : "pipe", show ? "inherit" : "pipe", show ? "inherit" : "pipe"], detached: Boolean(signal), ...account });
+    const stream = show ? "inherit" : "pipe";
+    const child = spawn(command, args, { cwd, env, stdio: [input === undefined ? "ignore" : "pipe", stream, stream], ...account });
     let output = "";
-    for (const stream of [child.stdout, child.stderr]) stream?.setEncoding("utf8").on("data", (text) => { output += text; });
+    for (const from of [child.stdout, child.stderr]) from?.setEncoding("utf8").on("data", (text) => { output += text; });
     if (input !== undefined) {
       child.stdin.on("error", () => {}); // it may end before it has read everything; its exit code says why
       child.stdin.end(input);
     }
-    const abort = () => void endProcess(identify(child.pid), { patienceMs: 15_000 });
-    signal?.addEventListener("abort", abort, { once: true });
     child.once("error", reject);
-    child.once("close", (code, by) => {
-      signal?.removeEventListener("abort", abort);
-      resolve({ code, signal: by, output });
+    if (child.pid === undefined) return;
+    const identity = identify(child.pid);
+    underWay.add(identity);
+    child.once("close", (code, signal) => {
+      underWay.delete(identity);
+      resolve({ code, signal, output });
     });
   });
 }

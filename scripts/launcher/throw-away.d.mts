@@ -6,7 +6,7 @@ interface ClusterAccess {
   urls(database: string): { ownerUrl: string; appUrl: string };
 }
 
-export function makeThrowAwayFolder(): Promise<{ folder: string; remove(): void }>;
+export function makeThrowAwayFolder(): Promise<{ folder: string; note(children?: { name: string; pid: number; begin?: string }[]): void; remove(): void }>;
 export function startThrowAwayCluster(): Promise<ClusterAccess & { env: Record<string, string>; stop(): Promise<void> }>;
 export function givenCluster(env?: NodeJS.ProcessEnv): ClusterAccess | undefined;
 export function newDatabaseName(kind: string): string;

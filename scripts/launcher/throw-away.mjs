@@ -3,8 +3,8 @@ import fs from "node:fs";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
 import { startCluster, stopLeftoverServer, temporaryRoot } from "./cluster.mjs";
-import { readJson } from "./locks.mjs";
-import { identify, isRunning, runOrRefuse } from "./processes.mjs";
+import { readJson, writePrivately } from "./locks.mjs";
+import { endProcess, identify, isRunning, runOrRefuse } from "./processes.mjs";
 
 const ROOT = fileURLToPath(new URL("../..", import.meta.url));
 const PREFIX = "spotblue-throw-away-";
@@ -19,6 +19,7 @@ async function sweepLeftovers(root) {
       const owner = readJson(path.join(folder, "owner.json"));
       // Without a note it may be one that somebody is making this very moment.
       if (!owner || isRunning(owner)) continue;
+      await Promise.all((owner.children ?? []).map((child) => endProcess(child)));
       await stopLeftoverServer(dataDirOf(folder));
       fs.rmSync(folder, { recursive: true, force: true });
     } catch (error) {
@@ -32,9 +33,11 @@ export async function makeThrowAwayFolder() {
   const root = temporaryRoot();
   await sweepLeftovers(root);
   const folder = fs.mkdtempSync(path.join(root, PREFIX));
-  fs.writeFileSync(path.join(folder, "owner.json"), JSON.stringify(identify(process.pid)));
+  /** Notes who lives off this folder, to be ended with it should we be killed. */
+  const note = (children = []) => writePrivately(path.join(folder, "owner.json"), JSON.stringify({ ...identify(process.pid), children }));
+  note();
   fs.chmodSync(folder, 0o711); // the server's account walks through, and sees nothing
-  return { folder, remove: () => fs.rmSync(folder, { recursive: true, force: true }) };
+  return { folder, note, remove: () => fs.rmSync(folder, { recursive: true, force: true }) };
 }
 
 /**
