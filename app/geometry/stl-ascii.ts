@@ -62,7 +62,7 @@ export class AsciiStlReader implements TriangleReader {
   finish(): StlTriangles {
     const last = new Uint8Array(this.#carry.length + 1);
     last.set(this.#carry);
-    last[last.length - 1] = 10;
+    last[last.length - 1] = 32;
     this.#read(last, last.length);
 
     if (this.#expect !== Expect.AfterEnd && this.#expect !== Expect.Facet) {

@@ -13,7 +13,7 @@ import type { StlTriangles, TriangleReader } from "#app/geometry/stl-triangles.t
  */
 export function createStlReader(totalBytes: number): TriangleReader {
   let reader: TriangleReader | null = null;
-  let head = new Uint8Array(0);
+  let head: Uint8Array = new Uint8Array(0);
   let seen = 0;
 
   const begin = () => {
