@@ -40,8 +40,8 @@ export async function listCustomers(tx: Tx, list: ListQuery, all = false): Promi
 }
 
 export async function findCustomer(tx: Tx, id: string): Promise<Customer | undefined> {
-  const row = await tx<CustomerRow>("customers").select(columns).where("customers.id", id).first();
-  return row && toCustomer(row as CustomerRow);
+  const row = (await tx("customers").select(columns).where("customers.id", id).first()) as CustomerRow | undefined;
+  return row && toCustomer(row);
 }
 
 /** For a select field: those not set aside, by name. */

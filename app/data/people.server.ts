@@ -18,24 +18,24 @@ interface PersonRow {
   disabled_at: Date | null;
 }
 
-const columns = ["id", "name", "email", "password_hash", "github_id", "disabled_at"];
+const columns = ["id", "name", "email", "password_hash", "github_id", "disabled_at"] as const;
 
 function toPerson(row: PersonRow): Person {
   return { id: row.id, name: row.name, email: row.email, passwordHash: row.password_hash, githubId: row.github_id, disabled: row.disabled_at !== null };
 }
 
 export async function findPersonByEmail(tx: Tx, email: string): Promise<Person | undefined> {
-  const row = await tx<PersonRow>("people").select(columns).whereRaw("lower(email) = lower(?)", [email.trim()]).first();
+  const row = await tx<PersonRow>("people").select(...columns).whereRaw("lower(email) = lower(?)", [email.trim()]).first();
   return row && toPerson(row);
 }
 
 export async function findPerson(tx: Tx, id: string): Promise<Person | undefined> {
-  const row = await tx<PersonRow>("people").select(columns).where({ id }).first();
+  const row = await tx<PersonRow>("people").select(...columns).where({ id }).first();
   return row && toPerson(row);
 }
 
 export async function findPersonByGithub(tx: Tx, githubId: string): Promise<Person | undefined> {
-  const row = await tx<PersonRow>("people").select(columns).where({ github_id: githubId }).first();
+  const row = await tx<PersonRow>("people").select(...columns).where({ github_id: githubId }).first();
   return row && toPerson(row);
 }
 

@@ -7,7 +7,7 @@ import { PlainPage } from "#app/components/sheet.tsx";
 import { env } from "#app/env.server.ts";
 import { visitContext } from "#app/http/context.server.ts";
 import { readPreferences, sessionCookie } from "#app/http/cookies.server.ts";
-import { email, words } from "#app/http/fields.server.ts";
+import { email } from "#app/http/fields.server.ts";
 import { parseForm, type FieldErrors } from "#app/http/form.server.ts";
 import { safeNext } from "#app/http/next.ts";
 import { requestSignInLink, signInWithPassword } from "#app/services/sign-in.server.ts";
