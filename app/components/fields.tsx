@@ -1,6 +1,7 @@
 import type { InputHTMLAttributes, ReactNode } from "react";
 import { CrossedMark } from "#app/components/gate-marks.tsx";
 import { fieldId, useEntryForm } from "#app/components/form.tsx";
+import { lengthEntry } from "#app/components/measure-text.ts";
 
 export interface FieldProps {
   name: string;
@@ -147,8 +148,6 @@ export interface LengthFieldProps extends Omit<FieldProps, "defaultValue"> {
   placeholder?: string;
 }
 
-const MM_PER_INCH = 25.4;
-
 /**
  * A length in the form's unit, which is sent beside it as `units`. Fractions ("1 3/8") and a
  * unit of its own ("10 mm") may be typed; the server reads the text.
@@ -156,7 +155,7 @@ const MM_PER_INCH = 25.4;
 export function LengthField({ defaultMm, placeholder, ...field }: LengthFieldProps) {
   const { unit } = useEntryForm();
   return (
-    <FormField {...field} defaultValue={defaultMm == null || defaultMm === "" ? null : inUnit(defaultMm, unit)} after={unit}>
+    <FormField {...field} defaultValue={defaultMm == null || defaultMm === "" ? null : lengthEntry(defaultMm, unit)} after={unit}>
       {({ text, ...control }) => (
         <input
           // A new unit is a new entry: the untouched value is written again in it.
@@ -172,12 +171,6 @@ export function LengthField({ defaultMm, placeholder, ...field }: LengthFieldPro
       )}
     </FormField>
   );
-}
-
-function inUnit(mm: number | string, unit: "mm" | "in"): string {
-  if (unit === "mm") return String(mm);
-  // Twelve digits carry any stored mm value there and back unchanged.
-  return String(Number((Number(mm) / MM_PER_INCH).toPrecision(12)));
 }
 
 export interface ChoiceOption {

@@ -56,10 +56,8 @@ export interface MissingView {
   what: string;
   /** Who can supply it. */
   who?: string;
-  /** The words of the one action: "Record why". */
-  action?: string;
-  /** Where that action is done; left out for who may not do it. */
-  to?: string;
+  /** The one action, in words: "Record why"; left out for who may not do it. */
+  act?: { label: string; to: string };
 }
 
 /** The nine lines as small marks in a row, read aloud as one sentence. */
@@ -83,17 +81,22 @@ export function gateRowText(lines: Pick<GateLineView, "line" | "state">[]): stri
 
 export interface GateVerdictProps {
   verdict: "go" | "no-go";
-  lines: GateLineView[];
+  lines: Pick<GateLineView, "line" | "state">[];
+  /** What stands in the way beside the lines: set aside, replaced. */
+  blocked?: MissingView[];
   level?: "h1" | "h2";
 }
 
 /** The verdict, as a sentence. */
-export function GateVerdict({ verdict, lines, level: Heading = "h2" }: GateVerdictProps) {
-  const { sentence, rest } = verdictSentence(verdict, lines);
+export function GateVerdict({ verdict, lines, blocked = [], level: Heading = "h2" }: GateVerdictProps) {
+  const { sentence, rest } = verdictSentence(verdict, lines, blocked.length);
   return (
     <div className="mb-3">
       <Heading className="text-sentence text-balance">{sentence}</Heading>
       {rest && <p className="text-soft">{rest}</p>}
+      {blocked.map((missing) => (
+        <Missing key={missing.what} missing={missing} />
+      ))}
     </div>
   );
 }
@@ -120,16 +123,16 @@ export function GateLines({ lines }: { lines: GateLineView[] }) {
   );
 }
 
-function Missing({ missing: { what, who, action, to } }: { missing: MissingView }) {
+function Missing({ missing: { what, who, act } }: { missing: MissingView }) {
   return (
     <div className="flex items-baseline justify-between gap-x-4">
       <p className="text-[0.9375rem] text-soft">
         {what}
-        {who && !to && <span className="block">{`waits on ${who}`}</span>}
+        {who && !act && <span className="block">waits on the {who}</span>}
       </p>
-      {action && to && (
-        <Link to={to} className="word -my-2 shrink-0 py-2">
-          {action}
+      {act && (
+        <Link to={act.to} className="word -my-2 shrink-0 py-2">
+          {act.label}
         </Link>
       )}
     </div>
