@@ -5,7 +5,6 @@
 //   npm test -- pure                      one suite or several: typecheck lint pure integration build browser
 //   npm test -- tests/unit/domain/gate    files whose path holds the text, in the suites they belong to
 //   npm test -- pure gate -t "deposit"    what begins with a dash and what follows goes to the runner as it is
-import fs from "node:fs";
 import path from "node:path";
 import { installDebianPackages, isRoot, missingTestPackages } from "./launcher/debian.mjs";
 import { ensureBuild, ensurePackages } from "./launcher/freshness.mjs";
