@@ -11,6 +11,7 @@ import { ensurePostgres } from "./launcher/postgres-binaries.mjs";
 import { endCommandsUnderWay, endInWords, endProcess, identify, lastLines, runToEnd } from "./launcher/processes.mjs";
 import { createStack, neededFakes } from "./launcher/stack.mjs";
 import { printFault, Refusal, step } from "./launcher/steps.mjs";
+import { onStop } from "./launcher/stop-signals.mjs";
 
 const DATABASE = "spotblue";
 const began = performance.now();
@@ -33,13 +34,10 @@ async function leave(code) {
   process.exit(code);
 }
 
-for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) {
-  process.on(signal, () => {
-    if (stopping) return;
-    console.log("\nStopping …");
-    void leave(serving ? 0 : 130).finally(() => {});
-  });
-}
+onStop(() => {
+  console.log("\nStopping …");
+  void leave(serving ? 0 : 130);
+});
 
 try {
   await start();
@@ -65,7 +63,7 @@ async function start() {
     await step("Database cluster", startOwnCluster);
   }
   const database = cluster ? cluster.urls(DATABASE) : { appUrl: given.DATABASE_URL, ownerUrl: given.DATABASE_OWNER_URL };
-  stack = createStack({ folder: LOCAL, given, database, onChange: noteRunning });
+  stack = await createStack({ folder: LOCAL, given, database, onChange: noteRunning });
   const names = [fakes.store && "object store", fakes.mail && "mail catcher", fakes.github && "GitHub"].filter(Boolean);
   if (names.length > 0) await step("Stand-ins", async () => { await stack.startFakes(); return names.join(", "); });
   await step("Migrations", migrate);
@@ -73,8 +71,9 @@ async function start() {
   if (cluster) await step("Demo shop", seedOnce);
   await step("Build", ensureBuild);
   let url;
+  const worker = stack.startWorker();
   await step("Web process", async () => { url = await stack.startWeb(); });
-  await step("Worker", async () => { await stack.startWorker(); });
+  await step("Worker", () => worker);
   noteRunning(url);
   serving = true;
   printWelcome(url);

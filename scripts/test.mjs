@@ -13,6 +13,7 @@ import { readJson } from "./launcher/locks.mjs";
 import { ensurePostgres } from "./launcher/postgres-binaries.mjs";
 import { endCommandsUnderWay, runToEnd } from "./launcher/processes.mjs";
 import { printFault, step } from "./launcher/steps.mjs";
+import { onStop } from "./launcher/stop-signals.mjs";
 import { playwrightCount, readArguments, vitestCount } from "./launcher/suites.mjs";
 import { makeThrowAwayFolder, startThrowAwayCluster } from "./launcher/throw-away.mjs";
 
@@ -21,13 +22,10 @@ const { suites, filters, passedOn } = readArguments(process.argv.slice(2));
 const total = { passed: 0, failed: 0 };
 let reports, cluster, stopping;
 
-for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) {
-  process.on(signal, () => {
-    if (stopping) return;
-    console.error("\nInterrupted; tidying up …");
-    void tidyUp().then(() => process.exit(130));
-  });
-}
+onStop(() => {
+  console.error("\nInterrupted; tidying up …");
+  void tidyUp().then(() => process.exit(130));
+});
 
 function tidyUp() {
   stopping ??= (async () => {

@@ -2,45 +2,47 @@ import net from "node:net";
 
 const LOOPBACK = "127.0.0.1";
 
-/** The port if nobody listens on it, undefined if it is taken or not ours to use. 0 takes any. */
-function tryPort(port) {
+/** Listens on a port of loopback (0: any); undefined if it is taken or not ours to use. */
+function listen(port) {
   return new Promise((resolve) => {
-    const server = net.createServer();
+    const server = net.createServer((socket) => socket.destroy());
     server.once("error", () => resolve(undefined));
-    server.listen({ port, host: LOOPBACK, exclusive: true }, () => {
-      const taken = server.address().port;
-      server.close(() => resolve(taken));
-    });
+    server.listen({ port, host: LOOPBACK, exclusive: true }, () => resolve(server));
   });
 }
 
+const close = (server) => new Promise((resolve) => server.close(resolve));
+
 /**
- * A free port on loopback: the wanted one, else the next free one after it; without a wish any.
+ * Holds a free port of loopback until it is released: the wanted one, else the next free one
+ * after it; without a wish (0) any.
  *
- * Somebody else may take it before it is used; who listens on it must be ready to ask again.
+ * @returns {Promise<{ port: number, release: () => Promise<void> }>}
  */
-export async function freePort(wanted = 0, avoid = new Set()) {
-  if (wanted === 0) return tryPort(0);
-  for (let port = wanted; port < Math.min(wanted + 200, 65_536); port++) {
-    if (!avoid.has(port) && (await tryPort(port)) !== undefined) return port;
+export async function holdPort(wanted = 0, avoid = new Set()) {
+  const wishes = wanted === 0 ? [] : Array.from({ length: 200 }, (_, i) => wanted + i).filter((port) => port < 65_536 && !avoid.has(port));
+  for (const wish of [...wishes, 0]) {
+    const server = await listen(wish);
+    if (server) return { port: server.address().port, release: () => close(server) };
   }
-  return tryPort(0);
+  throw new Error("no port of loopback is free");
 }
 
-/** Several free ports that differ, none of them wished for. */
+/**
+ * A port of loopback that is free now, chosen as `holdPort` does. Somebody else may take it
+ * before it is used; who listens on it must be ready to ask again.
+ */
+export async function freePort(wanted = 0, avoid = new Set()) {
+  const held = await holdPort(wanted, avoid);
+  await held.release();
+  return held.port;
+}
+
+/** Several ports that are free now and differ, none of them wished for. */
 export async function freePorts(count) {
-  const servers = await Promise.all(
-    Array.from({ length: count }, () =>
-      new Promise((resolve, reject) => {
-        const server = net.createServer();
-        server.once("error", reject);
-        server.listen({ port: 0, host: LOOPBACK }, () => resolve(server));
-      }),
-    ),
-  );
-  const ports = servers.map((server) => server.address().port);
-  await Promise.all(servers.map((server) => new Promise((resolve) => server.close(resolve))));
-  return ports;
+  const held = await Promise.all(Array.from({ length: count }, () => holdPort()));
+  await Promise.all(held.map(({ release }) => release()));
+  return held.map(({ port }) => port);
 }
 
 /** Whether something accepts connections on the port of loopback now. */

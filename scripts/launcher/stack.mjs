@@ -2,7 +2,8 @@ import { randomBytes } from "node:crypto";
 import fs from "node:fs";
 import path from "node:path";
 import { readJson, writePrivately } from "./locks.mjs";
-import { runOrRefuse } from "./processes.mjs";
+import { holdPort } from "./ports.mjs";
+import { runOrRefuse, untilReady } from "./processes.mjs";
 import { createServices } from "./services.mjs";
 import { Refusal } from "./steps.mjs";
 import { ROOT } from "./house.mjs";
@@ -42,12 +43,15 @@ function ownSecrets(file) {
  * @param {{ ownerUrl?: string, appUrl: string }} options.database
  * @param {typeof PREFERRED_PORTS} [options.ports] wanted ports; 0 takes any
  */
-export function createStack({ folder, given, database, ports = PREFERRED_PORTS, report, onChange }) {
+export async function createStack({ folder, given, database, ports = PREFERRED_PORTS, report, onChange }) {
   const logs = path.join(folder, "logs");
   fs.mkdirSync(logs, { recursive: true, mode: 0o700 });
   const fakes = neededFakes(given);
   const secrets = ownSecrets(path.join(folder, "secrets.json"));
   const services = createServices({ logs, report, onChange });
+  // The seed and the stand-ins are told the address that the web process gets only later.
+  const webPort = await holdPort(isSet(given.PORT) ? Number(given.PORT) : ports.web);
+  const originAt = (port) => (isSet(given.APP_ORIGIN) ? given.APP_ORIGIN : `http://127.0.0.1:${port}`);
   const settings = {
     APP_MODE: "demo", HOST: "127.0.0.1", S3_REGION: "us-east-1", MAIL_FROM: "Spotblue <spotblue@localhost>", MAX_MODEL_MB: "500", MAX_PHOTO_MB: "30",
     SESSION_SECRETS: secrets.session,
@@ -55,6 +59,7 @@ export function createStack({ folder, given, database, ports = PREFERRED_PORTS, 
     // React and Express look at it; a person's "development" would slow the served app down.
     NODE_ENV: "production",
     DATABASE_URL: database.appUrl,
+    PORT: String(webPort.port), APP_ORIGIN: originAt(webPort.port),
   };
   delete settings.DATABASE_OWNER_URL; // for migrations and the seed only
 
@@ -106,21 +111,27 @@ export function createStack({ folder, given, database, ports = PREFERRED_PORTS, 
     seed: () => runAsOwner("db/seed.ts", "Seeding the demo shop"),
     /** @returns {Promise<string>} the address people open */
     startWeb: async () => {
-      const originIsGiven = isSet(given.APP_ORIGIN);
-      const wish = isSet(given.PORT) ? Number(given.PORT) : ports.web;
+      await webPort.release();
       const [port] = await services.serve({
-        name: "web process", vital: true, wanted: [wish], isReady: answersOk,
-        with: (at) => ({
-          args: ["app/server.ts"],
-          env: { ...settings, PORT: String(at), APP_ORIGIN: originIsGiven ? given.APP_ORIGIN : `http://127.0.0.1:${at}` },
-        }),
+        name: "web process", vital: true, wanted: [webPort.port], isReady: answersOk,
+        with: (at) => ({ args: ["app/server.ts"], env: { ...settings, PORT: String(at), APP_ORIGIN: originAt(at) } }),
       });
-      settings.PORT = String(port);
-      settings.APP_ORIGIN = originIsGiven ? given.APP_ORIGIN : `http://127.0.0.1:${port}`;
+      Object.assign(settings, { PORT: String(port), APP_ORIGIN: originAt(port) });
       return settings.APP_ORIGIN;
     },
-    startWorker: () => services.keep({ name: "worker", args: ["app/worker.server.ts"], env: settings }),
-    stop: () => services.stop([["web process", "worker"]]),
+    /** @returns {Promise<string | undefined>} what to say when it is not at work yet */
+    startWorker: async () => {
+      const log = path.join(logs, "worker.log");
+      const before = fs.existsSync(log) ? fs.statSync(log).size : 0;
+      const handle = await services.keep({ name: "worker", args: ["app/worker.server.ts"], env: settings });
+      const saysReady = () => fs.readFileSync(log).subarray(before).includes('"ready":true');
+      // The pages are of use without it, and it is started again: a late worker stops nothing.
+      return untilReady(handle, saysReady, { patienceMs: 20_000 }).then(() => undefined, () => "not at work yet");
+    },
+    stop: async () => {
+      await services.stop([["web process", "worker"]]);
+      await webPort.release();
+    },
   };
 }
 

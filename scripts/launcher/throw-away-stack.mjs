@@ -10,6 +10,7 @@ import { prepareLocal } from "./house.mjs";
 import { endCommandsUnderWay } from "./processes.mjs";
 import { createStack } from "./stack.mjs";
 import { printFault, step } from "./steps.mjs";
+import { onStop } from "./stop-signals.mjs";
 import { givenCluster, makeThrowAwayFolder, newDatabaseName, startThrowAwayCluster } from "./throw-away.mjs";
 
 const { values } = parseArgs({ options: { port: { type: "string" }, "mail-port": { type: "string" } } });
@@ -39,7 +40,7 @@ async function asAdmin(statement) {
   await client.query(statement).finally(() => client.end());
 }
 
-for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) process.on(signal, () => void leave(0));
+onStop(() => void leave(0));
 
 try {
   prepareLocal();
@@ -48,7 +49,7 @@ try {
   cluster = givenCluster();
   if (!cluster) await step("Throw-away cluster", async () => { cluster = ownCluster = await startThrowAwayCluster(); });
   await asAdmin(`create database ${database} owner spotblue_owner`);
-  stack = createStack({
+  stack = await createStack({
     folder: place.folder,
     // Nothing that a person configured for real may be touched by a test: only what Node needs is passed on.
     given: Object.fromEntries(["PATH", "HOME", "LANG", "TMPDIR"].map((name) => [name, process.env[name]])),
