@@ -64,19 +64,21 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
         </div>
       ) : (
         <div className={stack ? "" : "overflow-x-auto"} {...(stack ? {} : { tabIndex: 0, role: "region", "aria-label": caption })}>
-          <table className={`w-full text-left ${stack ? "max-sm:block" : "min-w-max"}`}>
+          {/* Stacking takes the table's meaning away in browsers; the roles give it back. */}
+          <table role="table" className={`w-full text-left ${stack ? "max-sm:block" : "min-w-max"}`}>
             <caption className={captionHidden ? "sr-only" : "pb-2 text-left text-lg font-semibold"}>{caption}</caption>
-            <thead className={stack ? "max-sm:sr-only" : ""}>
-              <tr className="border-b border-rule">
+            <thead role="rowgroup" className={stack ? "max-sm:sr-only" : ""}>
+              <tr role="row" className="border-b border-rule">
                 {columns.map((column) => (
                   <HeaderCell key={column.key} column={column} query={query} params={params} />
                 ))}
               </tr>
             </thead>
-            <tbody className={stack ? "max-sm:block" : ""}>
+            <tbody role="rowgroup" className={stack ? "max-sm:block" : ""}>
               {rows.map((row) => (
                 <tr
                   key={rowKey(row)}
+                  role="row"
                   className={`border-b border-hairline ${rowHref ? "relative hover:bg-wash" : ""} ${stack ? "max-sm:grid max-sm:grid-cols-[auto_minmax(0,1fr)] max-sm:gap-x-4 max-sm:py-2.5" : ""}`}
                 >
                   {columns.map((column, index) => (
@@ -140,8 +142,9 @@ function HeaderCell<Row>({ column, query, params }: { column: Column<Row> } & As
   return (
     <th
       scope="col"
+      role="columnheader"
       aria-sort={sorted ? (sorted.descending ? "descending" : "ascending") : undefined}
-      className={`py-0.5 pr-6 align-bottom font-label text-label font-medium text-soft last:pr-0 ${number ? "text-right" : ""}`}
+      className={`py-0.5 align-bottom font-label text-label font-medium text-soft last:pr-0 ${number ? "pr-10 text-right" : "pr-6"}`}
     >
       {sortable ? (
         <Link to={withParams(params, { sort: next, page: null })} preventScrollReset className={`inline-flex min-h-9 items-center gap-1.5 hover:text-ink ${sorted ? "font-semibold text-ink" : ""}`}>
@@ -173,11 +176,12 @@ function BodyCell<Row>({ column, first, stack, children }: { column: Column<Row>
   return (
     <Cell
       scope={first ? "row" : undefined}
-      className={`py-2.5 pr-6 font-normal last:pr-0 ${number ? "whitespace-nowrap text-right" : ""} ${stack ? `max-sm:py-0 max-sm:pr-0 ${stacked}` : ""} ${column.deskOnly ? "max-sm:hidden" : ""}`}
+      role={first ? "rowheader" : "cell"}
+      className={`py-2.5 font-normal last:pr-0 ${number ? "whitespace-nowrap pr-10 text-right" : "pr-6"} ${stack ? `max-sm:py-0 max-sm:pr-0 ${stacked}` : ""} ${column.deskOnly ? "max-sm:hidden" : ""}`}
     >
       {stack && !first ? (
         <>
-          <span aria-hidden="true" className={`font-label text-label text-soft sm:hidden ${column.deskOnly ? "hidden" : ""}`}>
+          <span aria-hidden="true" className={`text-left font-label text-label text-soft sm:hidden ${column.deskOnly ? "hidden" : ""}`}>
             {column.label}
           </span>
           <span className="max-sm:text-right">{children}</span>

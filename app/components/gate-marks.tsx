@@ -110,10 +110,12 @@ export function GateLines({ lines }: { lines: GateLineView[] }) {
         <li key={line.line} aria-label={line.line} className="grid grid-cols-[auto_minmax(0,1fr)] items-start gap-x-3 py-2">
           <MarkShape state={line.state} className="mt-1.5 h-3.5 w-auto" />
           <div className="min-w-0">
-            <p>
-              <span className="font-semibold first-letter:uppercase inline-block">{line.line}</span>{" "}
-              <span className={line.state === "failed" ? "text-failed" : "text-soft"}>{line.state}</span>
-              {line.detail && <span className="text-soft">, {line.detail}</span>}
+            <p className="flex items-baseline justify-between gap-x-4">
+              <span>
+                <span className="inline-block font-semibold first-letter:uppercase">{line.line}</span>{" "}
+                {line.detail && <span className="text-soft">{line.detail}</span>}
+              </span>
+              <span className={`font-label text-label font-medium ${line.state === "failed" ? "text-failed" : "text-soft"}`}>{line.state}</span>
             </p>
             {line.missing?.map((missing) => <Missing key={missing.what} missing={missing} />)}
           </div>

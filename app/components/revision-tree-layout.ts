@@ -34,10 +34,12 @@ export interface DrawnTree {
 }
 
 const LEFT = 28;
-const TOP = 30;
-export const LANE = 92;
-const COLUMN = 216;
-const NARROW = 88;
+const TOP = 28;
+export const LANE = 88;
+const COLUMN = 228;
+const NARROW = 100;
+/** Between a revision's words and the next column: where branches drop. */
+const BRANCH_ROOM = 52;
 /** Up to here every revision has its words in sight. */
 const FOLDS_ABOVE = 6;
 
@@ -58,7 +60,7 @@ export function drawTree(nodes: readonly TreeNodeView[], edges: readonly TreeEdg
     ...node,
     x: starts[node.column]!,
     y: TOP + node.lane * LANE,
-    width: starts[node.column + 1]! - starts[node.column]! - 20,
+    width: starts[node.column + 1]! - starts[node.column]! - (narrow.has(node.column) ? 14 : BRANCH_ROOM),
     narrow: narrow.has(node.column),
   }));
   const byId = new Map(drawn.map((node) => [node.id, node]));
@@ -71,12 +73,13 @@ export function drawTree(nodes: readonly TreeNodeView[], edges: readonly TreeEdg
   return { width: starts[columns]!, height: TOP + lanes * LANE - 8, nodes: drawn, paths };
 }
 
-/** Straight along a lane; a branch leaves its parent in one drop and then runs level. */
-function edgePath(a: { x: number; y: number }, b: { x: number; y: number }): string {
+/** Straight along a lane; a branch leaves the line behind its parent's words, before the next column. */
+function edgePath(a: DrawnNode, b: DrawnNode): string {
   if (a.y === b.y) return `M${a.x} ${a.y}H${b.x}`;
-  const drop = b.y - a.y;
-  const run = Math.min(72, b.x - a.x);
-  return `M${a.x} ${a.y}C${a.x + run / 2} ${a.y} ${a.x + run / 2} ${a.y + drop} ${a.x + run} ${b.y}H${b.x}`;
+  const from = a.x + a.width + (a.narrow ? 0 : 4);
+  const to = from + (a.narrow ? 12 : 36);
+  const middle = (from + to) / 2;
+  return `M${a.x} ${a.y}H${from}C${middle} ${a.y} ${middle} ${b.y} ${to} ${b.y}H${b.x}`;
 }
 
 export function isFoldable(nodes: readonly TreeNodeView[]): boolean {

@@ -71,7 +71,7 @@ function TreeNode({ node }: { node: DrawnNode }) {
         strokeWidth={current ? 2 : 1.75}
         strokeDasharray={setAside ? "3.4 2.4" : undefined}
       />
-      <foreignObject x={x - 10} y={y + 12} width={width + 10} height={LANE - 20}>
+      <foreignObject x={x - 10} y={y + 12} width={width + 8} height={LANE - 20}>
         <Link to={href} aria-current={current ? "page" : undefined} title={narrow ? changeText : undefined} className="group block px-0.5 outline-offset-[-2px]">
           <span className="flex items-baseline gap-1.5">
             <span className={`font-semibold group-hover:text-blue ${current ? "text-xl/6" : ""}`}>{label}</span>

@@ -22,36 +22,35 @@ export interface SheetProps {
 
 /** What lies inside the border: a main area, and columns and bands divided by hairlines. */
 export function Sheet({ top, left, right, rightLabel = "Beside", band, titleBlock, bleed, children }: SheetProps) {
-  const hasRight = Boolean(right);
-  const column = hasRight || titleBlock ? "lg:grid-cols-[minmax(0,1fr)_24.25rem]" : "lg:grid-cols-[minmax(0,1fr)]";
-  const columns = left ? (hasRight ? "lg:grid-cols-[20rem_minmax(0,1fr)_22rem]" : "lg:grid-cols-[20rem_minmax(0,1fr)]") : column;
+  const second = Boolean(right || titleBlock);
+  const columns = left
+    ? second
+      ? "lg:grid-cols-[20rem_minmax(0,1fr)_22rem]"
+      : "lg:grid-cols-[20rem_minmax(0,1fr)]"
+    : second
+      ? "lg:grid-cols-[minmax(0,1fr)_24.25rem]"
+      : "lg:grid-cols-[minmax(0,1fr)]";
+  // Rows: top, main, what the band is taller than the title block, title block.
   return (
-    <div className={`grid flex-1 grid-cols-[minmax(0,1fr)] content-start lg:content-stretch ${columns} ${rowsOf(Boolean(top), Boolean(band || titleBlock))}`}>
-      {titleBlock && <div className={`self-end lg:col-start-[-2] lg:col-end-[-1] ${top ? "lg:row-start-3" : "lg:row-start-2"}`}>{titleBlock}</div>}
+    <div className={`grid flex-1 grid-cols-[minmax(0,1fr)] content-start lg:content-stretch lg:grid-rows-[auto_1fr_auto_auto] ${columns}`}>
+      {titleBlock && <div className="lg:col-start-[-2] lg:col-end-[-1] lg:row-start-4">{titleBlock}</div>}
       {top && <div className="border-b border-rule lg:col-span-full lg:row-start-1">{top}</div>}
-      {left && <div className={`border-b border-rule p-5 lg:border-b-0 lg:border-r lg:px-6 lg:py-7 ${top ? "lg:row-start-2" : "lg:row-start-1"}`}>{left}</div>}
+      {left && <div className="border-b border-rule p-5 lg:row-start-2 lg:border-b-0 lg:border-r lg:px-6 lg:py-7">{left}</div>}
       <div
-        className={`min-w-0 ${bleed ? "" : "px-4 py-6 sm:px-7 lg:py-7"} ${top ? "lg:row-start-2" : "lg:row-start-1"} ${left ? "lg:col-start-2" : "lg:col-start-1"} ${!hasRight && titleBlock ? "lg:col-span-full" : ""}`}
+        className={`min-w-0 lg:row-start-2 ${bleed ? "" : "px-4 py-6 sm:px-7 lg:py-7"} ${left ? "lg:col-start-2" : "lg:col-start-1"} ${titleBlock && !right ? "lg:col-end-[-1]" : ""}`}
       >
         {children}
       </div>
-      {hasRight && (
-        <aside aria-label={rightLabel} className={`border-t border-rule px-4 py-6 sm:px-6 lg:col-start-[-2] lg:col-end-[-1] lg:border-l lg:border-t-0 lg:py-7 ${top ? "lg:row-start-2" : "lg:row-start-1"}`}>
+      {right && (
+        <aside aria-label={rightLabel} className="border-t border-rule px-4 py-6 sm:px-6 lg:col-start-[-2] lg:col-end-[-1] lg:row-start-2 lg:row-end-4 lg:border-l lg:border-t-0 lg:py-6">
           {right}
         </aside>
       )}
       {band && (
-        <div className={`min-w-0 border-t border-rule px-4 py-5 sm:px-5 lg:col-start-1 lg:col-end-[-2] ${top ? "lg:row-start-3" : "lg:row-start-2"} ${titleBlock ? "lg:border-r" : "lg:col-end-[-1]"}`}>
-          {band}
-        </div>
+        <div className={`min-w-0 border-t border-rule px-4 py-5 sm:px-5 lg:col-start-1 lg:row-start-3 lg:row-end-5 lg:py-3 ${second ? "lg:col-end-[-2]" : "lg:col-end-[-1]"}`}>{band}</div>
       )}
     </div>
   );
-}
-
-function rowsOf(top: boolean, foot: boolean): string {
-  if (top) return foot ? "lg:grid-rows-[auto_1fr_auto]" : "lg:grid-rows-[auto_1fr]";
-  return foot ? "lg:grid-rows-[1fr_auto]" : "lg:grid-rows-[1fr]";
 }
 
 export interface SheetHeadingProps {

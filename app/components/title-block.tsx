@@ -18,7 +18,7 @@ export function TitleBlock({ cells }: { cells: TitleCell[] }) {
   const folds = cells.map((cell, index) => (marked ? !cell.phone : index > 2));
   return (
     <div className="relative border-b border-ink lg:border-b-0 lg:border-l lg:border-t">
-      {folds.includes(true) && <input type="checkbox" id={id} className="peer sr-only" />}
+      {folds.includes(true) && <input type="checkbox" id={id} className="peer sr-only lg:hidden" />}
       <dl className="title-block grid grid-cols-[minmax(0,1.3fr)_minmax(0,1fr)_minmax(0,1fr)] overflow-hidden max-lg:pr-10">
         {cells.map(({ label, value, span }, index) => (
           <div key={label} className={`-mb-px -mr-px border-b border-r border-ink px-3 py-1.5 lg:py-2 ${folds[index] ? "title-fold" : ""} ${spans[span ?? 1]}`}>
