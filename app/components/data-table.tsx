@@ -1,4 +1,4 @@
-import type { ReactNode } from "react";
+import { useId, type ReactNode } from "react";
 import { Form, Link, useSearchParams } from "react-router";
 import { readTableQuery, withParams, type TableQuery } from "#app/components/table-query.ts";
 
@@ -14,7 +14,7 @@ export interface Column<Row> {
 
 export interface DataTableProps<Row> {
   caption: string;
-  /** Keep the caption for readers only, where a heading already says it. */
+  /** Keep the caption for readers only, where the page's own heading already says it. */
   captionHidden?: boolean;
   columns: Column<Row>[];
   rows: Row[];
@@ -41,11 +41,12 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
   const { caption, captionHidden, columns, rows, rowKey, rowHref, empty, phone = "stack" } = props;
   const [params] = useSearchParams();
   const query = readTableQuery(params, columns.filter((column) => column.sortable).map((column) => column.key), props.defaultSort);
+  const id = useId();
   const stack = phone === "stack";
   const asked = query.q !== "";
   return (
     <div>
-      <TableTools {...props} query={query} params={params} />
+      <TableTools {...props} headingId={id} query={query} params={params} />
       {rows.length === 0 ? (
         <div className="border-y border-rule py-8">
           {asked ? (
@@ -63,10 +64,9 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
           )}
         </div>
       ) : (
-        <div className={stack ? "" : "overflow-x-auto"} {...(stack ? {} : { tabIndex: 0, role: "region", "aria-label": caption })}>
+        <div className={stack ? "" : "overflow-x-auto"} {...(stack ? {} : { tabIndex: 0, role: "region", "aria-labelledby": id })}>
           {/* Stacking takes the table's meaning away in browsers; the roles give it back. */}
-          <table role="table" className={`w-full text-left ${stack ? "max-sm:block" : "min-w-max"}`}>
-            <caption className={captionHidden ? "sr-only" : "pb-2 text-left text-lg font-semibold"}>{caption}</caption>
+          <table role="table" aria-labelledby={id} className={`w-full text-left ${stack ? "max-sm:block" : "min-w-max"}`}>
             <thead role="rowgroup" className={stack ? "max-sm:sr-only" : ""}>
               <tr role="row" className="border-b border-rule">
                 {columns.map((column) => (
@@ -108,25 +108,40 @@ interface Asked {
   params: URLSearchParams;
 }
 
-function TableTools<Row>({ searchLabel, filters, csvHref, query, params }: DataTableProps<Row> & Asked) {
-  if (!searchLabel && !filters && !csvHref) return null;
+/** Heading, search and CSV on one line over the table. */
+function TableTools<Row>({ caption, captionHidden, headingId, searchLabel, filters, csvHref, query, params }: DataTableProps<Row> & Asked & { headingId: string }) {
   const sort = params.get("sort");
+  const heading = (
+    <h2 id={headingId} className={captionHidden ? "sr-only" : "mr-auto text-lg"}>
+      {caption}
+    </h2>
+  );
+  if (!searchLabel && !filters && !csvHref) return captionHidden ? heading : <div className="mb-1">{heading}</div>;
   return (
-    <div className="no-print mb-3 flex flex-wrap items-center justify-between gap-x-6 gap-y-2">
-      {searchLabel || filters ? (
-        <Form method="get" role="search" className="flex min-w-0 flex-1 flex-wrap items-center gap-3" preventScrollReset>
+    <div className={`mb-3 flex flex-wrap items-center gap-x-6 gap-y-2 ${captionHidden ? "justify-between" : ""}`}>
+      {heading}
+      {(searchLabel || filters) && (
+        <Form method="get" role="search" className="no-print flex min-w-0 flex-wrap items-center gap-3 max-sm:w-full" preventScrollReset>
           {sort && <input type="hidden" name="sort" value={sort} />}
-          {searchLabel && (
-            <input key={query.q} type="search" name="q" defaultValue={query.q} aria-label={searchLabel} placeholder={searchLabel} className="min-h-11 w-full max-w-72 min-w-0 border border-rule bg-transparent px-3" />
-          )}
           {filters}
-          <button className="button button-secondary">Find</button>
+          <span className="flex min-w-0 max-sm:w-full">
+            {searchLabel && (
+              <input
+                key={query.q}
+                type="search"
+                name="q"
+                defaultValue={query.q}
+                aria-label={searchLabel}
+                placeholder={searchLabel}
+                className="-mr-px min-h-11 w-64 min-w-0 border border-rule bg-transparent px-3 max-sm:flex-1"
+              />
+            )}
+            <button className="min-h-11 border border-rule px-4 font-semibold hover:border-blue hover:text-blue">{searchLabel ? "Find" : "Show"}</button>
+          </span>
         </Form>
-      ) : (
-        <span />
       )}
       {csvHref && (
-        <a href={csvHref + withParams(params, { page: null }).replace(/^\?$/, "")} download className="word flex min-h-11 items-center">
+        <a href={csvHref + withParams(params, { page: null }).replace(/^\?$/, "")} download className="word no-print flex min-h-11 items-center">
           CSV
         </a>
       )}

@@ -20,8 +20,8 @@ const WIDTH = 360;
 const EDGE = 22;
 
 /**
- * Where limits, undecided bands and readings stand on a scale of 360 units. The limits keep the
- * middle third; a reading further out stands at the edge and says so. One limit alone
+ * Where limits, undecided bands and readings stand on a scale of 360 units. The limits keep about
+ * the middle third; a reading far out stands at the edge and says so. One limit alone
  * is drawn with as much room on the open side as its reading asks for.
  *
  * @throws RangeError when a number is not finite or the lower limit lies above the upper
@@ -57,7 +57,10 @@ export function placeOnScale({ lower, upper, readings, uncertainty }: ScaleInput
 function drawnRange({ lower, upper, readings, uncertainty }: ScaleInput): { from: number; to: number } {
   if (lower !== null && upper !== null && upper > lower) {
     const span = upper - lower;
-    return { from: lower - span, to: upper + span };
+    // A reading a little further out still gets its place; one far out would shrink the limits to a line.
+    const room = (beyond: number) => (beyond <= span * 2 ? Math.max(span, beyond * 1.15) : span);
+    const newest = readings.at(-1) ?? lower;
+    return { from: lower - room(lower - newest), to: upper + room(newest - upper) };
   }
   const centre = lower ?? upper ?? readings[0] ?? 0;
   const furthest = Math.max(0, ...readings.map((value) => Math.abs(value - centre)));

@@ -57,12 +57,17 @@ export function PhotoWithSpots({ src, alt, width, height, spots, pick }: PhotoWi
         </svg>
       </div>
       {pick && (
-        <figcaption className="mt-2 flex flex-wrap items-center gap-x-4 gap-y-1 text-sm text-soft">
-          <span id={id} aria-live="polite" className="flex-1">
+        <figcaption className="mt-2 text-sm text-soft">
+          <p id={id} aria-live="polite">
             {spot ? spotText(spot) : "Touch the picture where you mean, or use the arrow keys."}
-          </span>
-          <SpotNumber name="x" label="from the left" value={spot?.x} onChange={(x) => setSpot({ y: 0.5, ...spot, x })} />
-          <SpotNumber name="y" label="from the top" value={spot?.y} onChange={(y) => setSpot({ x: 0.5, ...spot, y })} />
+          </p>
+          <details>
+            <summary className="flex min-h-11 items-center font-medium text-blue">Put it by numbers, 0 to 1</summary>
+            <div className="flex flex-wrap gap-x-6 gap-y-2">
+              <SpotNumber name="x" label="from the left" value={spot?.x} onChange={(x) => setSpot({ y: 0.5, ...spot, x })} />
+              <SpotNumber name="y" label="from the top" value={spot?.y} onChange={(y) => setSpot({ x: 0.5, ...spot, y })} />
+            </div>
+          </details>
         </figcaption>
       )}
     </figure>

@@ -37,9 +37,9 @@ const LEFT = 28;
 const TOP = 28;
 export const LANE = 88;
 const COLUMN = 228;
-const NARROW = 100;
+const NARROW = 128;
 /** Between a revision's words and the next column: where branches drop. */
-const BRANCH_ROOM = 52;
+const BRANCH_ROOM = 50;
 /** Up to here every revision has its words in sight. */
 const FOLDS_ABOVE = 6;
 
@@ -60,7 +60,7 @@ export function drawTree(nodes: readonly TreeNodeView[], edges: readonly TreeEdg
     ...node,
     x: starts[node.column]!,
     y: TOP + node.lane * LANE,
-    width: starts[node.column + 1]! - starts[node.column]! - (narrow.has(node.column) ? 14 : BRANCH_ROOM),
+    width: starts[node.column + 1]! - starts[node.column]! - BRANCH_ROOM,
     narrow: narrow.has(node.column),
   }));
   const byId = new Map(drawn.map((node) => [node.id, node]));
@@ -76,8 +76,8 @@ export function drawTree(nodes: readonly TreeNodeView[], edges: readonly TreeEdg
 /** Straight along a lane; a branch leaves the line behind its parent's words, before the next column. */
 function edgePath(a: DrawnNode, b: DrawnNode): string {
   if (a.y === b.y) return `M${a.x} ${a.y}H${b.x}`;
-  const from = a.x + a.width + (a.narrow ? 0 : 4);
-  const to = from + (a.narrow ? 12 : 36);
+  const from = a.x + a.width;
+  const to = from + BRANCH_ROOM - 16;
   const middle = (from + to) / 2;
   return `M${a.x} ${a.y}H${from}C${middle} ${a.y} ${middle} ${b.y} ${to} ${b.y}H${b.x}`;
 }
