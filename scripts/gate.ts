@@ -21,7 +21,13 @@ async function main(args: string[]): Promise<void> {
   }
   const parsed = gateRecords.safeParse(document);
   if (!parsed.success) return refuse(firstFault(parsed.error));
-  print(evaluateGate(parsed.data, new Date()));
+  try {
+    print(evaluateGate(parsed.data, new Date()));
+  } catch (error) {
+    // Text that has no UTF-8 form can't be hashed; the message says where it stands.
+    if (!(error instanceof TypeError || error instanceof RangeError)) throw error;
+    refuse(oneLine(error.message));
+  }
 }
 
 function print(document: unknown): void {
@@ -39,7 +45,8 @@ function firstFault({ issues }: z.ZodError): string {
   if (issue === undefined) return "the records are not usable";
   const unknown = issue.code === "unrecognized_keys" ? issue.keys[0] : undefined;
   const key = keyInWords(unknown === undefined ? issue.path : [...issue.path, unknown]);
-  const fault = unknown === undefined ? oneLine(issue.message) : "is not a key of the records";
+  const missing = issue.code === "invalid_type" && issue.message.endsWith("received undefined");
+  const fault = unknown !== undefined ? "is not a key of the records" : missing ? "is missing" : oneLine(issue.message);
   const rest = issues.length > 1 ? ` (and ${issues.length - 1} more)` : "";
   return `${key}: ${fault}${rest}`;
 }

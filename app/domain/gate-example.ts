@@ -8,7 +8,7 @@ const parentStepSha256 = "3e".repeat(32);
 /**
  * A complete records document that is a go, invented, with every kind of record once where one is
  * enough: two characteristics, so that one is tried on a print and the other carried over; a callout
- * that is closed and a concession that is no longer needed, which no line rests on.
+ * that is closed and a concession that is over, which no line rests on.
  */
 export const exampleGateRecords: GateRecords = {
   part: {
@@ -77,7 +77,7 @@ export const exampleGateRecords: GateRecords = {
   matingParts: [{ id: "mating-part-1", name: "Tank ring" }],
   photos: [{ id: "photo-1", sha256: "f0".repeat(32), hashVerified: true }],
   prints: [{ id: "print-1", name: "4.1", whole: true, proves: [], modelSha256: stlSha256, spoiled: null }],
-  fitChecks: [{ id: "fit-check-1", print: "print-1", matingPart: "mating-part-1", at: "2026-02-10T17:20:00Z", by: "Rin Aldous" }],
+  fitChecks: [{ id: "fit-check-1", print: "print-1", matingPart: "mating-part-1", at: "2024-02-10T17:20:00Z", by: "Rin Aldous" }],
   results: [
     {
       id: "result-1",
@@ -126,24 +126,24 @@ export const exampleGateRecords: GateRecords = {
     criticalSurfaces: "seal face, Ra 1.6 µm",
     edgeBreak: "0.2 to 0.4 mm, all edges",
     coating: "none",
-    confirmed: { by: "Rin Aldous", at: "2026-02-10T18:00:00Z", modelSha256: stepSha256 },
+    confirmed: { by: "Rin Aldous", at: "2024-02-10T18:00:00Z", modelSha256: stepSha256 },
   },
   holeInstructions: [{ id: "hole-instruction-1", label: "6 × Ø 5.50 through", holes: [0, 1, 2, 3, 4, 5], treatment: "clearance" }],
   questions: [{ id: "question-1", text: "Can it be held for the seal face and the bore in one set-up?", retired: false }],
   machinistAnswers: [
-    { id: "machinist-answer-1", question: "question-1", stance: "agree", text: "Yes, soft jaws.", by: "Odo Farrant", at: "2026-02-11T08:30:00Z", modelSha256: stepSha256, closed: null },
+    { id: "machinist-answer-1", question: "question-1", stance: "agree", text: "Yes, soft jaws.", by: "Odo Farrant", at: "2024-02-11T08:30:00Z", modelSha256: stepSha256, closed: null },
   ],
   customerAnswers: [
-    { id: "customer-answer-1", answer: "approved", reason: null, by: "Mika Sorn", at: "2026-02-11T12:05:00Z", modelSha256: stepSha256, since: null, recorded: null },
+    { id: "customer-answer-1", answer: "approved", reason: null, by: "Mika Sorn", at: "2024-02-11T12:05:00Z", modelSha256: stepSha256, since: null, recorded: null },
   ],
   callouts: [{ id: "callout-1", text: "Will the hinge clear the strap?", byCustomer: true, open: false }],
   deposit: { id: "deposit-1", currency: "EUR", agreed_minor: 25000, waived: null },
-  payments: [{ id: "payment-1", currency: "EUR", amount_minor: 25000, how: "card", at: "2026-02-11T12:10:00Z" }],
+  payments: [{ id: "payment-1", currency: "EUR", amount_minor: 25000, how: "card", at: "2024-02-11T12:10:00Z" }],
   acknowledgements: [
     {
       id: "acknowledgement-1",
       by: "Rin Aldous",
-      at: "2026-02-11T13:00:00Z",
+      at: "2024-02-11T13:00:00Z",
       cautions: [
         { code: "check-not-approval", basis: "always shown" },
         { code: "machine-tools", basis: "always shown" },
@@ -156,10 +156,10 @@ export const exampleGateRecords: GateRecords = {
     {
       id: "concession-1",
       lines: ["deposit"],
-      reason: "granted while the payment was on its way; it has arrived since",
+      reason: "granted for a day while the payment was on its way; it has arrived since",
       by: "Rin Aldous",
-      at: "2026-02-11T12:00:00Z",
-      limit: { pieces: 1, until: "2026-03-31" },
+      at: "2024-02-11T12:00:00Z",
+      limit: { pieces: 1, until: "2024-02-12" },
       outsideApproval: null,
     },
   ],
