@@ -17,10 +17,16 @@ export default [
     route("customers/:customerId", "routes/customer.tsx"),
   ]),
 
+  // Stored files: permission is asked here, the bytes come from the store
+  route("files/:fileId", "routes/file.ts"),
+  route("files/:fileId/:kind", "routes/file-derived.ts"),
+
   // Tables as files
   route("customers.csv", "routes/customers-csv.ts"),
 
   ...prefix("api", [
     route("events", "routes/api-events.ts"),
+    route("uploads", "routes/api-uploads.ts"),
+    route("uploads/:fileId", "routes/api-upload.ts"),
   ]),
 ] satisfies RouteConfig;

@@ -1,4 +1,6 @@
 import type { JobPayload, QueueName } from "./queues.ts";
+import { checkFile } from "./check-file.server.ts";
+import { derivePhoto } from "./derive-photo.server.ts";
 import { sendMail } from "./send-mail.server.ts";
 import { sweep } from "./sweep.server.ts";
 
@@ -6,6 +8,8 @@ import { sweep } from "./sweep.server.ts";
 export type Handler = (job: JobPayload, stopping: AbortSignal) => Promise<void>;
 
 export const handlers: Partial<Record<QueueName, Handler>> = {
+  "check-file": checkFile,
+  "derive-photo": derivePhoto,
   "send-mail": sendMail,
   sweep,
 };
