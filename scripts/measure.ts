@@ -3,10 +3,9 @@ import { createHash } from "node:crypto";
 import { closeSync, fstatSync, openSync, readSync, type Stats } from "node:fs";
 import { basename, resolve } from "node:path";
 import { Worker } from "node:worker_threads";
-import { measureTriangles, type StlUnit } from "#app/geometry/measure-stl.ts";
+import { createStlMeasurer, type StlUnit } from "#app/geometry/measure-stl.ts";
 import { UnreadableModel, type MeasureDocument } from "#app/geometry/measure-document.ts";
 import { sniffModel, SNIFF_BYTES } from "#app/geometry/sniff-model.ts";
-import { createStlReader } from "#app/geometry/stl-reader.ts";
 
 const USAGE = "usage: npm run -s measure -- FILE [--unit mm|in]";
 const CHUNK_BYTES = 1 << 20;
@@ -66,12 +65,12 @@ async function measureStlFile(descriptor: number, path: string, name: string, by
   beside?.hash.catch(() => {});
   try {
     const hash = beside ? null : createHash("sha256");
-    const reader = createStlReader(bytes);
+    const measurer = createStlMeasurer(bytes, { name, unit });
     for (const chunk of chunksOf(descriptor)) {
       hash?.update(chunk);
-      reader.push(chunk);
+      measurer.push(chunk);
     }
-    const document = measureTriangles(reader.finish(), { name, bytes, unit, sha256: hash?.digest("hex") ?? "" });
+    const document = measurer.finish(hash?.digest("hex") ?? "");
     if (beside) document.file.sha256 = await beside.hash;
     return document;
   } finally {
@@ -121,6 +120,11 @@ function explain(error: unknown, file: string | undefined): { line: string; exit
   if (error instanceof RangeError && /alloc|array length|buffer/i.test(error.message)) return { line: named("too large for the memory of this machine"), exitCode: 2 };
   return { line: named(`could not be measured (${error instanceof Error ? error.message : String(error)})`), exitCode: 1 };
 }
+
+// A reader that has seen enough (head, less) closes the pipe: nothing went wrong.
+process.stdout.on("error", (error: NodeJS.ErrnoException) => {
+  if (error.code !== "EPIPE") throw error;
+});
 
 let request: Request | undefined;
 try {

@@ -13,12 +13,14 @@ export interface EdgeCounts {
   repeatedVertexTriangles: number;
 }
 
-/** Fields of an edge record: other vertex, next edge at the same vertex, a triangle, what was seen. */
-const WORDS = 4;
-/** In the fourth word: uses, as 1, 2, 3 (three or more), and flags. */
+/** Fields of an edge record: other vertex, next edge at the same vertex, what was seen. */
+const WORDS = 3;
+/** In the third word: uses, as 1, 2, 3 (three or more), flags, and above them a triangle. */
 const USES = 3;
 const FIRST_ASCENDS = 4;
 const SAME_WAY = 8;
+const TRIANGLE_SHIFT = 4;
+const MOST_TRIANGLES = 2 ** 28;
 
 /** Edge records walked per half edge before lists are laid out so that no vertex can have a long one. */
 const PATIENCE = 24;
@@ -31,8 +33,10 @@ const PATIENCE = 24;
  * fewer, which bounds a list by the square root of twice the edges.
  *
  * @param indices three vertex numbers a triangle, below `vertexCount`
+ * @throws RangeError beyond 268 million triangles
  */
 export function countEdges(indices: Uint32Array, vertexCount: number, onProgress?: (share: number) => void): EdgeCounts {
+  if (indices.length / 3 > MOST_TRIANGLES) throw new RangeError("too many triangles");
   return gather(indices, vertexCount, null, onProgress) ?? gather(indices, vertexCount, valences(indices, vertexCount), onProgress)!;
 }
 
@@ -77,15 +81,14 @@ function gather(indices: Uint32Array, vertexCount: number, rank: Uint32Array | n
         const record = edges * WORDS;
         records[record] = other;
         records[record + 1] = heads[keeper]!;
-        records[record + 2] = triangle;
-        records[record + 3] = 1 | (ascends ? FIRST_ASCENDS : 0);
+        records[record + 2] = (triangle << TRIANGLE_SHIFT) | 1 | (ascends ? FIRST_ASCENDS : 0);
         heads[keeper] = ++edges;
       } else {
         const record = edge * WORDS;
-        const seen = records[record + 3]!;
-        if ((seen & USES) === 1) records[record + 3] = (seen + 1) | (((seen & FIRST_ASCENDS) !== 0) === ascends ? SAME_WAY : 0);
-        else if ((seen & USES) === 2) records[record + 3] = seen + 1;
-        let neighbour = records[record + 2]!;
+        const seen = records[record + 2]!;
+        if ((seen & USES) === 1) records[record + 2] = (seen + 1) | (((seen & FIRST_ASCENDS) !== 0) === ascends ? SAME_WAY : 0);
+        else if ((seen & USES) === 2) records[record + 2] = seen + 1;
+        let neighbour = seen >>> TRIANGLE_SHIFT;
         while (parent[neighbour] !== neighbour) neighbour = parent[neighbour] = parent[parent[neighbour]!]!;
         if (neighbour !== root) {
           // The older root stays: paths are short, as triangles of a file follow each other.
@@ -102,7 +105,7 @@ function gather(indices: Uint32Array, vertexCount: number, rank: Uint32Array | n
   }
 
   let openEdges = 0, nonManifoldEdges = 0, misorientedEdges = 0;
-  for (let record = 3; record < edges * WORDS; record += WORDS) {
+  for (let record = WORDS - 1; record < edges * WORDS; record += WORDS) {
     const seen = records[record]!;
     const uses = seen & USES;
     if (uses === 1) openEdges++;

@@ -4,7 +4,7 @@ import { hasZeroArea } from "#app/geometry/zero-area.ts";
 /** Triangles summed on their own before they join the total, so that a million terms cost no digits. */
 const BLOCK = 1024;
 
-/** Sums over the triangles of a mesh, in powers of the coordinates' unit. */
+/** Sums over the triangles of a mesh, in powers of the vertices' unit. */
 export interface MassProperties {
   area: number;
   /** Triangles whose area is exactly zero. */
@@ -30,27 +30,29 @@ export interface MassProperties {
  * oriented mesh the result does not depend on `about`, but its digits do: a point amid the part
  * keeps them however far from the origin it lies.
  *
- * @param coordinates nine finite numbers a triangle
+ * @param vertices three finite numbers each
+ * @param indices three vertex numbers a triangle
  */
-export function massPropertiesOf(coordinates: Float32Array | Float64Array, about: Vec3): MassProperties {
+export function massPropertiesOf(vertices: Float32Array | Float64Array, indices: Uint32Array, about: Vec3): MassProperties {
   const [ox, oy, oz] = about;
   let area = 0, zeroAreaTriangles = 0, sumX = 0, sumY = 0, sumZ = 0;
   let volume = 0, mx = 0, my = 0, mz = 0, mxx = 0, myy = 0, mzz = 0, mxy = 0, myz = 0, mzx = 0;
-  for (let from = 0; from < coordinates.length; from += BLOCK * 9) {
-    const to = Math.min(coordinates.length, from + BLOCK * 9);
+  for (let from = 0; from < indices.length; from += BLOCK * 3) {
+    const to = Math.min(indices.length, from + BLOCK * 3);
     let doubled = 0, nxs = 0, nys = 0, nzs = 0;
     let v = 0, x = 0, y = 0, z = 0, xx = 0, yy = 0, zz = 0, xy = 0, yz = 0, zx = 0;
-    for (let at = from; at < to; at += 9) {
-      const px = coordinates[at]!, py = coordinates[at + 1]!, pz = coordinates[at + 2]!;
-      const qx = coordinates[at + 3]!, qy = coordinates[at + 4]!, qz = coordinates[at + 5]!;
-      const rx = coordinates[at + 6]!, ry = coordinates[at + 7]!, rz = coordinates[at + 8]!;
+    for (let at = from; at < to; at += 3) {
+      const p = indices[at]! * 3, q = indices[at + 1]! * 3, r = indices[at + 2]! * 3;
+      const px = vertices[p]!, py = vertices[p + 1]!, pz = vertices[p + 2]!;
+      const qx = vertices[q]!, qy = vertices[q + 1]!, qz = vertices[q + 2]!;
+      const rx = vertices[r]!, ry = vertices[r + 1]!, rz = vertices[r + 2]!;
       const ux = qx - px, uy = qy - py, uz = qz - pz;
       const vx = rx - px, vy = ry - py, vz = rz - pz;
       const nx = uy * vz - uz * vy, ny = uz * vx - ux * vz, nz = ux * vy - uy * vx;
       const squared = nx * nx + ny * ny + nz * nz;
       // A sine above 1e-12 is far above what rounding can feign; below, only exact arithmetic knows.
       const least = (ux * ux + uy * uy + uz * uz) * (vx * vx + vy * vy + vz * vz) * 1e-24;
-      if (!(squared > least && squared > 1e-290) && hasZeroArea(coordinates, at)) {
+      if (!(squared > least && squared > 1e-290) && hasZeroArea(vertices, p, q, r)) {
         zeroAreaTriangles++;
         continue;
       }

@@ -2,9 +2,9 @@ import { countEdges } from "#app/geometry/edge-counts.ts";
 import { guessUnits } from "#app/geometry/guess-unit.ts";
 import { centroidAndInertia, massPropertiesOf, volumeAboutOrigin } from "#app/geometry/mass-properties.ts";
 import { UnreadableModel, type MeasureDocument, type MeasuredMesh, type Vec3 } from "#app/geometry/measure-document.ts";
-import { readStlTriangles } from "#app/geometry/stl-reader.ts";
-import { count, type StlTriangles } from "#app/geometry/stl-triangles.ts";
-import { weldVertices } from "#app/geometry/weld-vertices.ts";
+import { createStlReader, expectedCorners } from "#app/geometry/stl-reader.ts";
+import { count, type StlFacts } from "#app/geometry/stl-triangles.ts";
+import { createWelder, type WeldedMesh, type Welder } from "#app/geometry/weld-vertices.ts";
 
 const MM_PER_UNIT = { mm: 1, in: 25.4 } as const;
 export type StlUnit = keyof typeof MM_PER_UNIT;
@@ -13,6 +13,10 @@ export type StlUnit = keyof typeof MM_PER_UNIT;
 const SUSPICIOUS_MM = 1e5;
 /** A volume below this share of area × size is rounding, as of a flat sheet that closes on itself. */
 const NO_VOLUME = 1e-12;
+/** Small enough to report progress from, large enough not to cost anything. */
+const PIECE_BYTES = 1 << 20;
+/** Share of the time that reading and welding take. */
+const READING_SHARE = 0.6;
 
 export interface MeasureStlOptions {
   name: string;
@@ -27,33 +31,58 @@ export interface MeasureStlOptions {
 /**
  * What is there to know about this STL?
  *
- * @param bytes the whole file
- * @throws UnreadableModel with one line that says why and what to do
- */
-export function measureStl(bytes: Uint8Array, options: MeasureStlOptions): MeasureDocument {
-  const triangles = readStlTriangles(bytes);
-  options.onProgress?.(0.2);
-  return measureTriangles(triangles, { ...options, bytes: bytes.length, onProgress: (share) => options.onProgress?.(0.2 + 0.8 * share) });
-}
-
-/**
- * The same for triangles that a streaming reader gathered.
- *
  * Volume, and centroid and inertia where the mesh is closed, follow the winding: an inside-out
  * part has a negative volume. The volume of a mesh that is not closed and oriented is taken about
  * the file's origin, as is usual, and a warning says that it means little; centroid and inertia of
  * an open mesh, or of one without volume, are null.
  *
- * @param options.bytes size of the file
+ * @param bytes the whole file
+ * @throws UnreadableModel with one line that says why and what to do
  */
-export function measureTriangles({ coordinates, format, warnings: found }: StlTriangles, options: MeasureStlOptions & { bytes: number }): MeasureDocument {
-  const { name, sha256, unit, onProgress } = options;
-  const triangles = coordinates.length / 9;
-  const { indices, vertices, vertexCount } = weldVertices(coordinates, (share) => onProgress?.(0.5 * share));
-  const counts = countEdges(indices, vertexCount, (share) => onProgress?.(0.5 + 0.35 * share));
+export function measureStl(bytes: Uint8Array, { sha256, ...options }: MeasureStlOptions): MeasureDocument {
+  const measurer = createStlMeasurer(bytes.length, options);
+  for (let at = 0; at < bytes.length; at += PIECE_BYTES) measurer.push(bytes.subarray(at, at + PIECE_BYTES));
+  return measurer.finish(sha256);
+}
+
+/**
+ * The same for a file that comes in pieces, of which none is kept: ten million triangles take
+ * about half a gigabyte.
+ *
+ * @param totalBytes size of the whole file
+ */
+export function createStlMeasurer(totalBytes: number, options: Omit<MeasureStlOptions, "sha256">) {
+  let welder: Welder<Float32Array | Float64Array> | null = null;
+  let seen = 0;
+  const reader = createStlReader(totalBytes, (coordinates) => {
+    const precision = coordinates instanceof Float32Array ? "single" : "double";
+    welder ??= createWelder(precision, expectedCorners(totalBytes, precision));
+    welder.add(coordinates);
+  });
+  return {
+    push(chunk: Uint8Array): void {
+      reader.push(chunk);
+      seen += chunk.length;
+      options.onProgress?.((READING_SHARE * seen) / totalBytes);
+    },
+    finish(sha256: string): MeasureDocument {
+      const facts = reader.finish();
+      // A reader that finishes has handed on at least one triangle.
+      return describe(facts, welder!.finish(), totalBytes, { ...options, sha256 });
+    },
+  };
+}
+
+function describe(
+  { format, triangles, warnings: found }: StlFacts,
+  { indices, vertices, vertexCount }: WeldedMesh,
+  bytes: number,
+  { name, sha256, unit, onProgress }: MeasureStlOptions,
+): MeasureDocument {
+  const counts = countEdges(indices, vertexCount, (share) => onProgress?.(READING_SHARE + (0.9 - READING_SHARE) * share));
   const bounds = boundsOf(vertices);
   const middle = bounds.min.map((low, axis) => low + bounds.size[axis]! / 2) as Vec3;
-  const sums = massPropertiesOf(coordinates, middle);
+  const sums = massPropertiesOf(vertices, indices, middle);
   if (sums.zeroAreaTriangles === triangles) {
     throw new UnreadableModel(`none of its ${count(triangles, "triangle")} has an area: there is nothing to measure; export the part again`);
   }
@@ -77,7 +106,7 @@ export function measureTriangles({ coordinates, format, warnings: found }: StlTr
   const mm = MM_PER_UNIT[unit ?? "mm"];
   const scaled = (point: Vec3, factor: number) => point.map((part) => part * factor || 0) as Vec3;
   return {
-    file: { name, bytes: options.bytes, sha256, format },
+    file: { name, bytes, sha256, format },
     unit: { source: unit ?? "mm", assumed: unit === undefined },
     warnings: [...found, ...warningsAbout(mesh, volume, hasVolume), ...sizeWarnings(largest, mm, unit)],
     mesh,

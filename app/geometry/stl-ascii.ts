@@ -1,6 +1,6 @@
 import { UnreadableModel } from "#app/geometry/measure-document.ts";
 import { parseDecimal } from "#app/geometry/parse-decimal.ts";
-import { count, type StlTriangles, type TriangleReader } from "#app/geometry/stl-triangles.ts";
+import { BLOCK_TRIANGLES, count, type StlFacts, type StlReader, type TakeTriangles } from "#app/geometry/stl-triangles.ts";
 
 const keyword = (text: string) => Uint8Array.from(text, (letter) => letter.charCodeAt(0));
 const SOLID = keyword("solid"), ENDSOLID = keyword("endsolid"), FACET = keyword("facet"), ENDFACET = keyword("endfacet");
@@ -22,9 +22,11 @@ const enum Expect { Solid, Facet, Outer, Loop, Vertex, Coordinate, EndFacet, Aft
  *
  * @throws UnreadableModel naming the line, for anything that would change or lose a triangle
  */
-export class AsciiStlReader implements TriangleReader {
-  #coordinates: Float64Array;
+export class AsciiStlReader implements StlReader {
+  readonly #take: TakeTriangles;
+  readonly #block = new Float64Array(BLOCK_TRIANGLES * 9);
   #used = 0;
+  #triangles = 0;
   #expect = Expect.Solid;
   #skipLine = false;
   /** "end" was read alone, its object follows as the next word. */
@@ -40,9 +42,8 @@ export class AsciiStlReader implements TriangleReader {
   #warnings = new Set<string>();
   #carry = new Uint8Array(0);
 
-  constructor(totalBytes: number) {
-    // A facet takes about 250 bytes, the tersest about 100: a first guess that grows when short.
-    this.#coordinates = new Float64Array(Math.ceil(totalBytes / 250 + 4) * 9);
+  constructor(take: TakeTriangles) {
+    this.#take = take;
   }
 
   push(chunk: Uint8Array): void {
@@ -59,7 +60,7 @@ export class AsciiStlReader implements TriangleReader {
     this.#read(bytes, end);
   }
 
-  finish(): StlTriangles {
+  finish(): StlFacts {
     const last = new Uint8Array(this.#carry.length + 1);
     last.set(this.#carry);
     last[last.length - 1] = 32;
@@ -68,15 +69,16 @@ export class AsciiStlReader implements TriangleReader {
     if (this.#expect !== Expect.AfterEnd && this.#expect !== Expect.Facet) {
       throw this.#refuse("the file ends inside a facet: it is cut off; export or upload it again");
     }
-    if (this.#used === 0 && this.#expect === Expect.Facet) {
+    if (this.#triangles === 0 && this.#expect === Expect.Facet) {
       throw this.#refuse("the file ends before its first facet: it is cut off; export or upload it again");
     }
-    if (this.#used === 0) throw new UnreadableModel("the STL holds no triangles; export the part again");
+    if (this.#triangles === 0) throw new UnreadableModel("the STL holds no triangles; export the part again");
+    this.#handOn();
     const warnings = [...this.#warnings];
     if (this.#expect === Expect.Facet) warnings.push("The last endsolid is missing: the file may be cut off.");
     if (this.#strayWords > 0) warnings.push(`${count(this.#strayWords, "word")} after endsolid left out.`);
     if (this.#solids > 1) warnings.push(`${count(this.#solids, "solid")} in one file, measured together.`);
-    return { format: "stl-ascii", coordinates: this.#coordinates.subarray(0, this.#used), warnings };
+    return { format: "stl-ascii", triangles: this.#triangles, warnings };
   }
 
   #read(bytes: Uint8Array, end: number): void {
@@ -117,12 +119,7 @@ export class AsciiStlReader implements TriangleReader {
       if (word.includes(",")) throw this.#refuse(`"${word}" has a decimal comma; export with decimal points`);
       throw this.#refuse(`"${word}" is not a coordinate; repair the mesh or export the part again`);
     }
-    if (this.#used === this.#coordinates.length) {
-      const larger = new Float64Array(Math.ceil(this.#used * 1.5 / 9) * 9);
-      larger.set(this.#coordinates);
-      this.#coordinates = larger;
-    }
-    this.#coordinates[this.#used++] = value;
+    this.#block[this.#used++] = value;
     if (++this.#axis === 3) this.#expect = Expect.Vertex;
   }
 
@@ -187,6 +184,8 @@ export class AsciiStlReader implements TriangleReader {
         if (closes(ENDFACET, FACET)) {
           this.#end = false;
           this.#expect = Expect.Facet;
+          this.#triangles++;
+          if (this.#used === this.#block.length) this.#handOn();
           return;
         }
         break;
@@ -197,6 +196,11 @@ export class AsciiStlReader implements TriangleReader {
         return;
     }
     throw this.#refuse(`"${shown(bytes, from, to)}" where ${EXPECTED[this.#expect]} should stand; export the part again`);
+  }
+
+  #handOn(): void {
+    if (this.#used > 0) this.#take(this.#block.subarray(0, this.#used));
+    this.#used = 0;
   }
 
   #openSolid(): void {

@@ -5,12 +5,13 @@
  * with its rounding error (Dekker, "A floating-point technique for extending the available
  * precision", 1971); the rest is decided in whole numbers.
  *
- * @param at index of the first of nine finite coordinates, of at most single-precision size
+ * @param vertices finite coordinates of at most single-precision size
+ * @param a,b,c where the three numbers of each corner begin
  */
-export function hasZeroArea(coordinates: Float32Array | Float64Array, at: number): boolean {
-  const ax = coordinates[at]!, ay = coordinates[at + 1]!, az = coordinates[at + 2]!;
-  const bx = coordinates[at + 3]!, by = coordinates[at + 4]!, bz = coordinates[at + 5]!;
-  const cx = coordinates[at + 6]!, cy = coordinates[at + 7]!, cz = coordinates[at + 8]!;
+export function hasZeroArea(vertices: Float32Array | Float64Array, a: number, b: number, c: number): boolean {
+  const ax = vertices[a]!, ay = vertices[a + 1]!, az = vertices[a + 2]!;
+  const bx = vertices[b]!, by = vertices[b + 1]!, bz = vertices[b + 2]!;
+  const cx = vertices[c]!, cy = vertices[c + 1]!, cz = vertices[c + 2]!;
   if (ax === bx && ay === by && az === bz) return true;
   if (bx === cx && by === cy && bz === cz) return true;
   if (cx === ax && cy === ay && cz === az) return true;

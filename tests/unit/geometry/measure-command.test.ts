@@ -1,4 +1,4 @@
-import { spawnSync } from "node:child_process";
+import { spawn, spawnSync } from "node:child_process";
 import { copyFileSync, mkdirSync, mkdtempSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
@@ -58,6 +58,16 @@ test("a large file is hashed beside the measuring: the same hash", () => {
   expect(file).toEqual({ name: "large.stl", bytes: 9_000_084, format: "stl-binary", sha256: expect.stringMatching(/^[0-9a-f]{64}$/) });
   expect(file.sha256).toBe(spawnSync("sha256sum", [join(folder, "large.stl")], { encoding: "utf8" }).stdout.slice(0, 64));
   expect(mesh).toMatchObject({ triangles: 180_000, closed: true, oriented: true, shells: 1 });
+});
+
+test("a closed pipe is no fault and shows no stack", async () => {
+  const command = spawn(process.execPath, ["--import", "tsx", "scripts/measure.ts", join(models, "stl/soup.stl")], { cwd: root, stdio: ["ignore", "pipe", "pipe"] });
+  command.stdout.destroy();
+  let said = "";
+  command.stderr.on("data", (chunk) => (said += chunk));
+  const code = await new Promise((settle) => command.on("close", settle));
+  expect(said).toBe("");
+  expect(code).toBe(0);
 });
 
 describe("bad input: exit code 2, one line that names what is wrong, nothing else", () => {

@@ -1,30 +1,37 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { createStlReader, readStl, readStlTriangles } from "#app/geometry/stl-reader.ts";
+import { createStlReader, readStl } from "#app/geometry/stl-reader.ts";
 import { sniffModel } from "#app/geometry/sniff-model.ts";
 import { asciiStl, binaryStl, box, torus } from "./solids.ts";
 
 const text = (content: string) => new TextEncoder().encode(content);
 const facet = "facet normal 0 0 1\nouter loop\nvertex 0 0 0\nvertex 1 0 0\nvertex 0 1 0\nendloop\nendfacet\n";
 
+function readTriangles(bytes: Uint8Array, deliver: (push: (chunk: Uint8Array) => void) => void = (push) => push(bytes)) {
+  const coordinates: number[] = [];
+  const reader = createStlReader(bytes.length, (block) => coordinates.push(...block));
+  deliver((chunk) => reader.push(chunk));
+  return { ...reader.finish(), coordinates };
+}
+
 /** The bytes in pieces, all through one buffer that is overwritten, as a file reader does it. */
 function readInPieces(bytes: Uint8Array, sizes: number[]) {
-  const reader = createStlReader(bytes.length);
-  const buffer = new Uint8Array(Math.max(1, ...sizes));
-  for (let at = 0, turn = 0; at < bytes.length; turn++) {
-    const piece = bytes.subarray(at, at + sizes[turn % sizes.length]!);
-    buffer.fill(0xff);
-    buffer.set(piece);
-    reader.push(buffer.subarray(0, piece.length));
-    at += piece.length;
-  }
-  return reader.finish();
+  return readTriangles(bytes, (push) => {
+    const buffer = new Uint8Array(Math.max(1, ...sizes));
+    for (let at = 0, turn = 0; at < bytes.length; turn++) {
+      const piece = bytes.subarray(at, at + sizes[turn % sizes.length]!);
+      buffer.fill(0xff);
+      buffer.set(piece);
+      push(buffer.subarray(0, piece.length));
+      at += piece.length;
+    }
+  });
 }
 
 describe("pieces", () => {
   const files = { binary: binaryStl(torus(50, 20, 24, 12)), trailing: new Uint8Array([...binaryStl(torus(50, 20, 12, 8)), ...new Uint8Array(130)]), text: asciiStl(torus(50, 20, 12, 8), "käse # facet") };
   test.each(Object.entries(files))("of any size give the same %s", (_, bytes) => {
-    const whole = readStlTriangles(bytes);
+    const whole = readTriangles(bytes);
     fc.assert(
       fc.property(fc.array(fc.oneof(fc.integer({ min: 1, max: 60 }), fc.integer({ min: 1, max: 9000 })), { minLength: 1, maxLength: 6 }), (sizes) => {
         expect(readInPieces(bytes, sizes)).toEqual(whole);
@@ -35,14 +42,14 @@ describe("pieces", () => {
 
   test("a file that stops arriving is refused", () => {
     const bytes = binaryStl(box(1, 1, 1));
-    const reader = createStlReader(bytes.length);
+    const reader = createStlReader(bytes.length, () => {});
     reader.push(bytes.subarray(0, 300));
     expect(() => reader.finish()).toThrow(/only 300 of 684 bytes/);
   });
 });
 
 describe("text", () => {
-  const triangles = (content: string) => readStlTriangles(text(content));
+  const triangles = (content: string) => readTriangles(text(content));
   test.each([
     ["exponents", "solid\nfacet normal 0 0 1 outer loop vertex 0 0 0 vertex 1.5E+02 -2e-3 .5 vertex +7. 0 1e0 endloop endfacet endsolid", [0, 0, 0, 150, -0.002, 0.5, 7, 0, 1]],
     ["no normal", `solid\n${facet.replace("normal 0 0 1", "")}endsolid`, [0, 0, 0, 1, 0, 0, 0, 1, 0]],
