@@ -1,0 +1,2 @@
+export const ROOT: string;
+export function parseDotEnv(text: string): Record<string, string>;
