@@ -61,6 +61,7 @@ cases("model", [
 
 cases("print", [
   ["a print of another model", (r) => void (r.prints[0]!.modelSha256 = otherSha256), "open", "no print of this revision's model proves spigot bore", "designer", "record-print"],
+  ["a print of a file whose bytes are not verified", (r) => void (stl(r).hashVerified = false), "open", "no print of this revision's model proves spigot bore", "designer", "record-print"],
   ["a spoiled print", (r) => void (r.prints[0]!.spoiled = "warped"), "open", "no print of this revision's model proves spigot bore", "designer", "record-print"],
   ["a partial print that proves what is not carried over", (r) => { r.prints[0]!.whole = false; r.prints[0]!.proves = ["characteristic-spigot"]; }, "met"],
   ["a partial print that proves something else", (r) => { r.prints[0]!.whole = false; r.prints[0]!.proves = ["characteristic-screws"]; }, "open", "no print of this revision's model proves spigot bore", "designer", "record-print"],
@@ -178,6 +179,7 @@ cases("customer", [
   ["approved another model, reconfirmed this one, saw what changed", (r) => { reconfirm({ answer: "customer-answer-1", changesSeen: true })(r); customer(r).modelSha256 = otherSha256; }, "met"],
   ["reconfirmed without seeing what changed", (r) => { reconfirm({ answer: "customer-answer-1", changesSeen: false })(r); }, "open", "the customer reconfirmed without seeing what changed since the approval", "customer", "answer-customer"],
   ["reconfirmed what was never approved", (r) => { reconfirm({ answer: "customer-answer-0", changesSeen: true })(r); }, "open", "the customer reconfirmed, but no approval from before is among the records", "customer", "answer-customer"],
+  ["reconfirmed its own answer", (r) => { reconfirm({ answer: "customer-answer-2", changesSeen: true })(r); }, "open", "the customer reconfirmed, but no approval from before is among the records", "customer", "answer-customer"],
   ["recorded by the shop from a call", (r) => void (customer(r).recorded = { how: "call", on: "2024-02-11", by: "Rin Aldous", picture: null }), "met"],
   ["recorded from a text message, with its picture", (r) => void (customer(r).recorded = { how: "text-message", on: "2024-02-11", by: "Rin Aldous", picture: "photo-1" }), "met"],
   ["recorded from a text message without one", (r) => void (customer(r).recorded = { how: "text-message", on: "2024-02-11", by: "Rin Aldous", picture: null }), "open", "the picture of the customer's text message is missing", "designer", "ask-customer"],
@@ -209,6 +211,12 @@ test("a speed that was raised has to be read again", () => {
     });
   expect(lineOf(spinning(6000), "cautions").state).toBe("met");
   expect(lineOf(spinning(9000), "cautions").state).toBe("open");
+});
+
+test("with two STEPs nobody knows which one was approved, cut for or computed", () => {
+  const records = changed((r) => void r.models.push({ ...step(r), id: "model-step-2", sha256: otherSha256 }));
+  const open = evaluateGate(records, now).lines.filter((one) => one.state === "open").map((one) => one.line);
+  expect(open).toEqual(["model", "fit", "calculations", "instructions", "machinist", "customer"]);
 });
 
 test("a line the part does not ask for is met by nothing and says so; model and cautions are always asked for", () => {
