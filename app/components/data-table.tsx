@@ -38,7 +38,7 @@ export interface DataTableProps<Row> {
 
 /** The one table: sort, search and page live in the URL, so a view can be sent to somebody. */
 export function DataTable<Row>(props: DataTableProps<Row>) {
-  const { caption, captionHidden, columns, rows, rowKey, rowHref, empty, phone = "stack" } = props;
+  const { caption, columns, rows, rowKey, rowHref, empty, phone = "stack" } = props;
   const [params] = useSearchParams();
   const query = readTableQuery(params, columns.filter((column) => column.sortable).map((column) => column.key), props.defaultSort);
   const id = useId();

@@ -1,6 +1,7 @@
 import { createContext, useContext, useEffect, useId, useMemo, useRef, useState, type ReactNode } from "react";
 import { Form, useNavigation, type FetcherWithComponents, type FormProps } from "react-router";
 import { CrossedMark } from "#app/components/gate-marks.tsx";
+import { countWord } from "#app/components/gate-words.ts";
 import { buttonClass, type ButtonWeight } from "#app/components/link-button.tsx";
 import { useUnits, type LengthUnit } from "#app/components/measure.tsx";
 
@@ -37,7 +38,7 @@ export interface EntryFormProps extends Omit<FormProps, "className" | "style" | 
   /** Sends through this fetcher instead of navigating. */
   fetcher?: FetcherWithComponents<unknown>;
   className?: string;
-  children: ReactNode;
+  children?: ReactNode;
 }
 
 const noFaults: FormFaults = {};
@@ -103,8 +104,10 @@ export function FormErrors({ errors, labels = {} }: { errors: FormFaults; labels
   return (
     <div role="alert" tabIndex={-1} data-form-faults className="mb-5 flex gap-3 border-[1.5px] border-failed bg-failed-wash px-4 py-3">
       <CrossedMark className="mt-1.5 h-3 w-auto shrink-0" />
-      <div>
-        <p className="font-semibold">{faults.length === 1 ? "Nothing was saved: one thing to mend." : `Nothing was saved: ${faults.length} things to mend.`}</p>
+      <div className="min-w-0">
+        {faults.some(({ name }) => name !== "form") && (
+          <p className="font-semibold first-letter:uppercase">{`${countWord(faults.length)} ${faults.length === 1 ? "thing" : "things"} to mend`}</p>
+        )}
         <ul className="mt-0.5">
           {faults.map(({ name, message }, index) => (
             <li key={index}>

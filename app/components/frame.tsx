@@ -119,16 +119,16 @@ function NavWords({ nav, className }: { nav: NavWord[]; className: string }) {
 
 function Crumbs({ crumbs }: { crumbs: Crumb[] }) {
   return (
-    <nav aria-label="Where you are" className="order-last w-full min-w-0 lg:order-none lg:w-auto lg:border-l lg:border-rule lg:pl-6">
-      <ol className="flex flex-wrap gap-x-4 lg:gap-x-5">
+    <nav aria-label="Where you are" className="order-last w-full min-w-0 xl:order-none xl:w-auto xl:border-l xl:border-rule xl:pl-6">
+      <ol className="flex flex-wrap gap-x-4 xl:gap-x-5">
         {crumbs.map(({ label, to }, index) => (
           <li key={`${index} ${label}`} className="min-w-0">
             {to ? (
-              <Link to={to} className="flex min-h-8 items-center text-soft hover:text-ink hover:underline hover:underline-offset-4 lg:min-h-11">
+              <Link to={to} className="flex min-h-8 items-center text-soft hover:text-ink hover:underline hover:underline-offset-4 xl:min-h-11">
                 {label}
               </Link>
             ) : (
-              <span aria-current="page" className="flex min-h-8 items-center font-semibold lg:min-h-11">
+              <span aria-current="page" className="flex min-h-8 items-center font-semibold xl:min-h-11">
                 {label}
               </span>
             )}

@@ -37,7 +37,7 @@ export function placeOnScale({ lower, upper, readings, uncertainty }: ScaleInput
   const clamp = (x: number) => Math.min(WIDTH - 12, Math.max(12, x));
   const lowerAt = lower === null ? 4 : at(lower);
   const upperAt = upper === null ? WIDTH - 4 : at(upper);
-  const close = lower !== null && upper !== null && upperAt - lowerAt < 60;
+  const close = lower !== null && upper !== null && lower < upper && upperAt - lowerAt < 60;
   return {
     width: WIDTH,
     band: lower === null && upper === null ? { from: 4, to: 4 } : { from: lowerAt, to: upperAt },
