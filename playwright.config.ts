@@ -46,7 +46,7 @@ export default defineConfig({
           timeout: 300_000,
           stdout: "pipe",
           stderr: "pipe",
-          gracefulShutdown: { signal: "SIGTERM", timeout: 30_000 },
+          gracefulShutdown: { signal: "SIGTERM", timeout: 20_000 },
         },
       }
     : {}),

@@ -56,6 +56,13 @@ export async function ensurePackages() {
   });
 }
 
+/** The bundler prints its reason first and then long lists of modules. */
+function fromFirstError(output) {
+  const lines = output.trimEnd().split("\n");
+  const first = Math.max(0, lines.findIndex((line) => /error|fail|could not/i.test(line)));
+  return lines.slice(first, first + 25).join("\n");
+}
+
 const stampFile = () => path.join(ROOT, "build", "built-from");
 
 function isBuilt(hash) {
@@ -73,7 +80,7 @@ export async function ensureBuild({ show = false } = {}) {
       command: process.execPath, args: [path.join(ROOT, "node_modules/@react-router/dev/bin.js"), "build"], cwd: ROOT,
       env: { ...process.env, NODE_ENV: "production" }, show,
     });
-    if (code !== 0) throw new Refusal(`The build failed (exit code ${code}):\n${output.trimEnd().split("\n").slice(-60).join("\n")}`);
+    if (code !== 0) throw new Refusal(`The build failed (exit code ${code}):\n${fromFirstError(output)}`);
     fs.writeFileSync(stampFile(), hash);
     return "built";
   });
