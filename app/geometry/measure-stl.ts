@@ -1,9 +1,10 @@
+import { counted } from "#app/geometry/counted.ts";
 import { countEdges } from "#app/geometry/edge-counts.ts";
 import { guessUnits } from "#app/geometry/guess-unit.ts";
 import { centroidAndInertia, massPropertiesOf, volumeAboutOrigin } from "#app/geometry/mass-properties.ts";
 import { UnreadableModel, type MeasureDocument, type MeasuredMesh, type Vec3 } from "#app/geometry/measure-document.ts";
 import { createStlReader, expectedCorners } from "#app/geometry/stl-reader.ts";
-import { count, type StlFacts } from "#app/geometry/stl-triangles.ts";
+import type { StlFacts } from "#app/geometry/stl-triangles.ts";
 import { createWelder, type WeldedMesh, type Welder } from "#app/geometry/weld-vertices.ts";
 
 const MM_PER_UNIT = { mm: 1, in: 25.4 } as const;
@@ -84,7 +85,7 @@ function describe(
   const middle = bounds.min.map((low, axis) => low + bounds.size[axis]! / 2) as Vec3;
   const sums = massPropertiesOf(vertices, indices, middle);
   if (sums.zeroAreaTriangles === triangles) {
-    throw new UnreadableModel(`none of its ${count(triangles, "triangle")} has an area: there is nothing to measure; export the part again`);
+    throw new UnreadableModel(`none of its ${counted(triangles, "triangle")} has an area: there is nothing to measure; export the part again`);
   }
   const mesh: MeasuredMesh = {
     triangles,
@@ -141,14 +142,14 @@ function boundsOf(vertices: Float32Array | Float64Array): { min: Vec3; max: Vec3
 
 function warningsAbout(mesh: MeasuredMesh, volume: number, hasVolume: boolean): string[] {
   const warnings: string[] = [];
-  if (mesh.degenerateTriangles > 0) warnings.push(`${count(mesh.degenerateTriangles, "triangle")} without area.`);
+  if (mesh.degenerateTriangles > 0) warnings.push(`${counted(mesh.degenerateTriangles, "triangle")} without area.`);
   if (!mesh.closed) {
-    const open = mesh.openEdges > 0 ? count(mesh.openEdges, "open edge") : "";
-    const crowded = mesh.nonManifoldEdges > 0 ? count(mesh.nonManifoldEdges, "edge with more than two triangles", "edges with more than two triangles") : "";
+    const open = mesh.openEdges > 0 ? counted(mesh.openEdges, "open edge") : "";
+    const crowded = mesh.nonManifoldEdges > 0 ? counted(mesh.nonManifoldEdges, "edge with more than two triangles", "edges with more than two triangles") : "";
     warnings.push(`The surface is not closed (${[open, crowded].filter(Boolean).join(", ")}): its volume can't be relied on.`);
   }
   if (!mesh.oriented) {
-    const edges = count(mesh.misorientedEdges, "edge");
+    const edges = counted(mesh.misorientedEdges, "edge");
     warnings.push(`Triangles disagree about which side is outside (${edges}): volume and centroid can't be relied on.`);
   }
   if (mesh.closed && mesh.oriented && !hasVolume) warnings.push("The surface encloses no volume.");

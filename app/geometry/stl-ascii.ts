@@ -1,6 +1,7 @@
+import { counted } from "#app/geometry/counted.ts";
 import { UnreadableModel } from "#app/geometry/measure-document.ts";
 import { parseDecimal } from "#app/geometry/parse-decimal.ts";
-import { BLOCK_TRIANGLES, count, type StlFacts, type StlReader, type TakeTriangles } from "#app/geometry/stl-triangles.ts";
+import { BLOCK_TRIANGLES, type StlFacts, type StlReader, type TakeTriangles } from "#app/geometry/stl-triangles.ts";
 
 const keyword = (text: string) => Uint8Array.from(text, (letter) => letter.charCodeAt(0));
 const SOLID = keyword("solid"), ENDSOLID = keyword("endsolid"), FACET = keyword("facet"), ENDFACET = keyword("endfacet");
@@ -76,8 +77,8 @@ export class AsciiStlReader implements StlReader {
     this.#handOn();
     const warnings = [...this.#warnings];
     if (this.#expect === Expect.Facet) warnings.push("The last endsolid is missing: the file may be cut off.");
-    if (this.#strayWords > 0) warnings.push(`${count(this.#strayWords, "word")} after endsolid left out.`);
-    if (this.#solids > 1) warnings.push(`${count(this.#solids, "solid")} in one file, measured together.`);
+    if (this.#strayWords > 0) warnings.push(`${counted(this.#strayWords, "word")} after endsolid left out.`);
+    if (this.#solids > 1) warnings.push(`${counted(this.#solids, "solid")} in one file, measured together.`);
     return { format: "stl-ascii", triangles: this.#triangles, warnings };
   }
 
@@ -174,7 +175,7 @@ export class AsciiStlReader implements StlReader {
           return;
         }
         if (closes(ENDLOOP, LOOP)) {
-          if (this.#corners < 3) throw this.#refuse(`a facet with ${count(this.#corners, "corner")} instead of three; export the part again`);
+          if (this.#corners < 3) throw this.#refuse(`a facet with ${counted(this.#corners, "corner")} instead of three; export the part again`);
           this.#end = false;
           this.#expect = Expect.EndFacet;
           return;

@@ -1,6 +1,7 @@
+import { counted } from "#app/geometry/counted.ts";
 import { UnreadableModel } from "#app/geometry/measure-document.ts";
 import { promisedTriangles, recordsLookLikeTriangles, SNIFF_BYTES, STL_HEAD_BYTES, STL_RECORD_BYTES } from "#app/geometry/sniff-model.ts";
-import { BLOCK_TRIANGLES, count, type StlFacts, type StlReader, type TakeTriangles } from "#app/geometry/stl-triangles.ts";
+import { BLOCK_TRIANGLES, type StlFacts, type StlReader, type TakeTriangles } from "#app/geometry/stl-triangles.ts";
 
 /**
  * Reads a binary STL: 80 bytes of header, a count, then per triangle normal, three corners and
@@ -30,7 +31,7 @@ export class BinaryStlReader implements StlReader {
     if (this.#promised === 0 && whole === 0) throw new UnreadableModel("the STL holds no triangles; export the part again");
     if (this.#promised > whole) {
       throw new UnreadableModel(
-        `the header promises ${count(this.#promised, "triangle")}, the file holds ${count(whole, "whole one")}: it is cut off or damaged; export or upload it again`,
+        `the header promises ${counted(this.#promised, "triangle")}, the file holds ${counted(whole, "whole one")}: it is cut off or damaged; export or upload it again`,
       );
     }
   }
@@ -69,11 +70,11 @@ export class BinaryStlReader implements StlReader {
     const forgotten = Math.floor(this.#trailing / STL_RECORD_BYTES);
     if (forgotten > 0 && recordsLookLikeTriangles(this.#tail.subarray(0, this.#tailBytes), 0)) {
       throw new UnreadableModel(
-        `the header counts ${count(this.#promised, "triangle")} but ${count(forgotten, "more follows", "more follow")}: the program that wrote it forgot the count; export the part again`,
+        `the header counts ${counted(this.#promised, "triangle")} but ${counted(forgotten, "more follows", "more follow")}: the program that wrote it forgot the count; export the part again`,
       );
     }
     if (this.#promised === 0) throw new UnreadableModel("the STL holds no triangles; export the part again");
-    const warnings = this.#trailing > 0 ? [`${count(this.#trailing, "byte")} after the last triangle left out.`] : [];
+    const warnings = this.#trailing > 0 ? [`${counted(this.#trailing, "byte")} after the last triangle left out.`] : [];
     return { format: "stl-binary", triangles: this.#triangles, warnings };
   }
 

@@ -21,5 +21,3 @@ export interface StlReader {
 
 /** Triangles that are handed on at once: their corners stay in the near cache. */
 export const BLOCK_TRIANGLES = 4096;
-
-export const count = (n: number, one: string, many = `${one}s`) => `${n.toLocaleString("en-US")} ${n === 1 ? one : many}`;

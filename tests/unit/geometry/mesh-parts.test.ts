@@ -175,7 +175,11 @@ describe("zero area", () => {
     // Three points of the x axis whose differences need more than 53 bits; then one of them 2^-100 beside it.
     expect(isZeroArea(Float64Array.of(2 ** -90, 0, 0, 2 ** -60, 0, 0, 1, 0, 0))).toBe(true);
     expect(isZeroArea(Float64Array.of(2 ** -90, 0, 0, 2 ** -60, 0, 0, 1, 2 ** -100, 0))).toBe(false);
+    // 1 - 2^-60 rounds to 1, and then the three would seem to lie on the diagonal.
+    expect(isZeroArea(Float64Array.of(2 ** -60, 0, 0, 1, 1, 0, 2, 2, 0))).toBe(false);
     expect(isZeroArea(Float64Array.of(1e-320, 0, 0, 2e-320, 0, 0, 3e-320, 0, 0))).toBe(true);
+    // On a line across the border of the subnormal numbers.
+    expect(isZeroArea(Float64Array.of(2 ** -1023, 2 ** -1000, 0, 2 ** -1022, 2 ** -999, 0, 3 * 2 ** -1023, 3 * 2 ** -1000, 0))).toBe(true);
     expect(isZeroArea(Float64Array.of(1e-320, 0, 0, 2e-320, 1e-320, 0, 3e-320, 0, 0))).toBe(false);
   });
 

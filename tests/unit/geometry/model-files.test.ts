@@ -141,6 +141,8 @@ test("a part in inches and in millimetres: 25.4", () => {
   expectWithin(inches.area_mm2!, asRead.area_mm2! * 25.4 ** 2, 1e-9 * inches.area_mm2!);
   expectWithin(inches.volume_mm3!, asRead.volume_mm3! * 25.4 ** 3, 1e-9 * inches.volume_mm3!);
   expect(inches.bounds_mm!.size[0]).toBeCloseTo(127, 3);
+  const cube = measureStl(read("stl/unit_cube.STL"), { name: "c", sha256: "", unit: "in" });
+  expectWithin(cube.inertia_mm5![0][0], 25.4 ** 5 / 6, 1e-9 * 25.4 ** 5); // m a² / 6
   expect(asRead.warnings.join()).toMatch(/inches \(it would be 127 mm long\)/);
   expect(inches.warnings.join()).not.toMatch(/inches/);
 });
