@@ -79,7 +79,9 @@ function useDialogAfterSending(dialog: RefObject<HTMLDialogElement | null>, { er
     if (sending) {
       sent.current = true;
     } else if (faulty) {
+      sent.current = false;
       if (dialog.current && !dialog.current.open) dialog.current.showModal();
+      dialog.current?.querySelector<HTMLElement>('[aria-invalid="true"]')?.focus();
     } else if (sent.current) {
       sent.current = false;
       dialog.current?.close();

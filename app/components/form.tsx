@@ -1,4 +1,4 @@
-import { createContext, useContext, useEffect, useId, useMemo, useRef, useState, type ReactNode } from "react";
+import { createContext, useCallback, useContext, useEffect, useId, useMemo, useRef, useState, type ReactNode } from "react";
 import { Form, useNavigation, type FetcherWithComponents, type FormProps } from "react-router";
 import { CrossedMark } from "#app/components/gate-marks.tsx";
 import { countWord } from "#app/components/gate-words.ts";
@@ -37,6 +37,8 @@ export interface EntryFormProps extends Omit<FormProps, "className" | "style" | 
   intent?: string;
   /** Sends through this fetcher instead of navigating. */
   fetcher?: FetcherWithComponents<unknown>;
+  /** Empties itself once it was sent without a fault: for an answer in a conversation, where the page stays. */
+  clearWhenSent?: boolean;
   className?: string;
   children?: ReactNode;
 }
@@ -48,10 +50,10 @@ const noFaults: FormFaults = {};
  * focus on the first fault. Sends `units` ("mm" or "in"), the unit its lengths were typed in:
  * switching the page's unit never changes the meaning of what already stands in a field.
  */
-export function EntryForm({ errors = noFaults, values, labels, intent, fetcher, className, children, ...form }: EntryFormProps) {
+export function EntryForm({ errors = noFaults, values, labels, intent, fetcher, clearWhenSent = false, className, children, ...form }: EntryFormProps) {
   const id = useId();
   const element = useRef<HTMLFormElement>(null);
-  const { unit, onInput } = useUnitOfForm(values);
+  const { unit, onInput, release } = useUnitOfForm(values);
   const { pending, pendingData } = usePending(intent, form.action, fetcher);
   const FormElement = fetcher?.Form ?? Form;
 
@@ -60,6 +62,15 @@ export function EntryForm({ errors = noFaults, values, labels, intent, fetcher, 
     const field = element.current?.querySelector<HTMLElement>('[aria-invalid="true"]');
     (field ?? element.current?.querySelector<HTMLElement>("[data-form-faults]"))?.focus();
   }, [errors]);
+
+  const wasPending = useRef(false);
+  useEffect(() => {
+    if (clearWhenSent && wasPending.current && !pending && Object.keys(errors).length === 0) {
+      element.current?.reset();
+      release();
+    }
+    wasPending.current = pending;
+  }, [clearWhenSent, pending, errors, release]);
 
   const state = useMemo(
     () => ({ id, errors, values: values ?? null, unit, pending, pendingData }),
@@ -83,7 +94,8 @@ function useUnitOfForm(values: FormValues | undefined) {
   const kept = values?.units === "mm" || values?.units === "in" ? values.units : null;
   const [touched, setTouched] = useState<LengthUnit | null>(null);
   const unit = touched ?? kept ?? pageUnit;
-  return { unit, onInput: () => setTouched((before) => before ?? unit) };
+  const release = useCallback(() => setTouched(null), []);
+  return { unit, onInput: () => setTouched((before) => before ?? unit), release };
 }
 
 function usePending(intent: string | undefined, action: FormProps["action"], fetcher: FetcherWithComponents<unknown> | undefined) {
