@@ -7,6 +7,7 @@ import { readJson, writePrivately } from "./locks.mjs";
 import { endProcess, identify, isRunning, runOrRefuse } from "./processes.mjs";
 
 const ROOT = fileURLToPath(new URL("../..", import.meta.url));
+const AN_HOUR_MS = 3_600_000;
 const PREFIX = "spotblue-throw-away-";
 const dataDirOf = (folder) => path.join(folder, "cluster");
 
@@ -15,11 +16,12 @@ async function sweepLeftovers(root) {
   for (const name of fs.readdirSync(root).filter((entry) => entry.startsWith(PREFIX))) {
     const folder = path.join(root, name);
     try {
-      if (fs.statSync(folder).uid !== process.getuid()) continue;
+      const { uid, mtimeMs } = fs.statSync(folder);
+      if (uid !== process.getuid()) continue;
       const owner = readJson(path.join(folder, "owner.json"));
       // Without a note it may be one that somebody is making this very moment.
-      if (!owner || isRunning(owner)) continue;
-      await Promise.all((owner.children ?? []).map((child) => endProcess(child)));
+      if (owner ? isRunning(owner) : Date.now() - mtimeMs < AN_HOUR_MS) continue;
+      await Promise.all((owner?.children ?? []).map((child) => endProcess(child)));
       await stopLeftoverServer(dataDirOf(folder));
       fs.rmSync(folder, { recursive: true, force: true });
     } catch (error) {
