@@ -11,6 +11,12 @@ export default [
   layout("routes/signed-in.tsx", [
     index("routes/today.tsx"),
 
+    // Jobs
+    route("jobs", "routes/jobs.tsx"),
+    route("jobs/new", "routes/job-edit.tsx", { id: "job-new" }),
+    route("jobs/:jobId", "routes/job.tsx"),
+    route("jobs/:jobId/edit", "routes/job-edit.tsx"),
+
     // Customers
     route("customers", "routes/customers.tsx"),
     route("customers/new", "routes/customer.tsx", { id: "customer-new" }),
@@ -23,6 +29,7 @@ export default [
 
   // Tables as files
   route("customers.csv", "routes/customers-csv.ts"),
+  route("jobs.csv", "routes/jobs-csv.ts"),
 
   ...prefix("api", [
     route("events", "routes/api-events.ts"),

@@ -4,9 +4,11 @@ import { closeDb } from "#db/connection.server.ts";
 import { env } from "./env.server.ts";
 import { handlers } from "./jobs/handlers.server.ts";
 import type { JobPayload } from "./jobs/queues.ts";
+import { store } from "./services/store.server.ts";
 
 // The worker: takes jobs from the queues in PostgreSQL, one at a time in each queue, so that a
 // slow model holds up neither mail nor photos. Run as many of these processes as the work needs.
+await store().ensureBucket();
 const boss = new PgBoss({ connectionString: env.DATABASE_URL, migrate: false, application_name: "spotblue worker" });
 boss.on("error", (error) => console.error("queue:", error.message));
 await boss.start();

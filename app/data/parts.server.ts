@@ -125,3 +125,21 @@ export async function changePart(tx: Tx, id: string, rowVersion: number, values:
 export async function setPartAside(tx: Tx, id: string, aside: boolean): Promise<void> {
   await tx("parts").where({ id }).update({ set_aside_at: aside ? tx.fn.now() : null, row_version: tx.raw("row_version + 1") });
 }
+
+export interface PartOnJob extends Part {
+  latestRevisionId: string | null;
+  latestOrdinal: number | null;
+  /** Letter of the latest release, where there is one. */
+  letter: string | null;
+}
+
+/** The parts of a job, each with its newest revision that is not set aside. */
+export async function listPartsWithLatest(tx: Tx, jobId: string): Promise<PartOnJob[]> {
+  const rows = (await selectParts(tx)
+    .where("parts.job_id", jobId)
+    .orderBy("parts.number")
+    .joinRaw(`left join lateral (select r.id, r.ordinal from revisions r where r.part_id = parts.id order by r.set_aside_at is not null, r.ordinal desc limit 1) latest on true`)
+    .joinRaw(`left join lateral (select d.letter from decisions d where d.part_id = parts.id and d.letter is not null order by d.at desc limit 1) released on true`)
+    .select("latest.id as latest_id", "latest.ordinal as latest_ordinal", "released.letter")) as Array<PartRow & { latest_id: string | null; latest_ordinal: number | null; letter: string | null }>;
+  return rows.map((row) => ({ ...toPart(row), latestRevisionId: row.latest_id, latestOrdinal: row.latest_ordinal, letter: row.letter }));
+}

@@ -14,6 +14,7 @@ export function store(): Store {
     secretAccessKey: env.S3_SECRET_ACCESS_KEY,
     // A bucket in the path works with every S3-compatible store at an address of its own.
     forcePathStyle: env.S3_ENDPOINT !== undefined,
+    origins: [env.APP_ORIGIN],
   });
   return opened;
 }

@@ -89,7 +89,14 @@ export async function presignParts(viewer: Viewer, fileId: string, numbers: numb
   if (!file?.uploadId || file.state !== "uploading") return null;
   const { key, uploadId } = file;
   const wanted = numbers.filter((n) => n >= 1 && n <= partCount(file.bytes));
-  return Promise.all(wanted.map(async (partNumber) => ({ partNumber, url: await store().presignPart(key, uploadId, partNumber, { seconds: partLife }) })));
+  const step = file.partBytes ?? partBytes;
+  return Promise.all(
+    wanted.map(async (partNumber) => ({
+      partNumber,
+      // The store refuses a part of any other size than the announced one.
+      url: await store().presignPart(key, uploadId, partNumber, { seconds: partLife, bytes: Math.min(step, file.bytes - (partNumber - 1) * step) }),
+    })),
+  );
 }
 
 /** Joins the parts, and has the worker hash the stored bytes before the file counts. */
