@@ -1,0 +1,41 @@
+import type { MeasureDocument } from "#app/geometry/measure-document.ts";
+
+/** What the kernel's process is asked to do; one task a process. */
+export type KernelTask =
+  | { kind: "measure"; path: string }
+  | { kind: "tessellate"; path: string; chord_mm: number }
+  /** Reads and then never answers, so that the limits can be tried on a process that is truly busy. */
+  | { kind: "spin"; path: string; grow: boolean };
+
+/** What it says back, over the channel between the processes. */
+export type KernelMessage =
+  | { kind: "progress"; share: number; step: string }
+  | { kind: "refused"; reason: string }
+  /** `bytes` follow on the binary pipe. */
+  | { kind: "done"; result: StepMeasures | TessellationIndex; bytes: number };
+
+/** The kernel's part of a measure document. */
+export type StepMeasures = Omit<MeasureDocument, "file" | "mesh"> & { products: string[] };
+
+export type FaceKind = "plane" | "cylinder" | "cone" | "torus" | "sphere" | "other";
+
+export interface TessellatedFace {
+  /** Into the indices, three a triangle. */
+  firstIndex: number;
+  indexCount: number;
+  kind: FaceKind;
+  /** What a person calls it: "plane", "bore Ø 6.60". */
+  label: string;
+}
+
+/** What says how the bytes of a tessellation divide. */
+export interface TessellationIndex {
+  positions: number;
+  normals: number;
+  indices: number;
+  edges: number;
+  faces: TessellatedFace[];
+}
+
+/** File descriptor of the binary pipe in the kernel's process. */
+export const BINARY_PIPE = 4;
