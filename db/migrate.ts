@@ -24,6 +24,9 @@ export async function migrate(ownerUrl: string): Promise<void> {
       await boss.createQueue(name, { name, ...options });
       await boss.updateQueue(name, { name, ...options });
     }
+    // The clock's own queue, which the worker's role has no right to make: without it pg-boss
+    // says nothing and no schedule ever runs.
+    await boss.createQueue("__pgboss__send-it");
     await boss.stop({ graceful: false });
     await db.raw(`
       grant usage on schema pgboss to spotblue_app;
