@@ -231,6 +231,7 @@ export interface DerivedFile {
   kind: DerivedKind;
   key: string;
   bytes: number;
+  sha256: string;
   mediaType: string;
   width: number | null;
   height: number | null;
@@ -238,11 +239,11 @@ export interface DerivedFile {
 }
 
 export async function putDerivedFile(tx: Tx, derived: Omit<DerivedFile, "width" | "height" | "detail"> & { shopId: string; jobId: string; width?: number; height?: number; detail?: Record<string, unknown> }): Promise<void> {
-  const values = { key: derived.key, bytes: derived.bytes, media_type: derived.mediaType, width: derived.width ?? null, height: derived.height ?? null, detail: JSON.stringify(derived.detail ?? {}) };
+  const values = { key: derived.key, bytes: derived.bytes, sha256: derived.sha256, media_type: derived.mediaType, width: derived.width ?? null, height: derived.height ?? null, detail: JSON.stringify(derived.detail ?? {}) };
   await tx("derived_files").insert({ shop_id: derived.shopId, job_id: derived.jobId, file_id: derived.fileId, kind: derived.kind, ...values }).onConflict(["shop_id", "file_id", "kind"]).merge(values);
 }
 
 export async function findDerivedFile(tx: Tx, fileId: string, kind: DerivedKind): Promise<DerivedFile | undefined> {
-  const row = (await tx("derived_files").where({ file_id: fileId, kind }).first()) as { file_id: string; kind: DerivedKind; key: string; bytes: string; media_type: string; width: number | null; height: number | null; detail: Record<string, unknown> } | undefined;
-  return row && { fileId: row.file_id, kind: row.kind, key: row.key, bytes: Number(row.bytes), mediaType: row.media_type, width: row.width, height: row.height, detail: row.detail };
+  const row = (await tx("derived_files").where({ file_id: fileId, kind }).first()) as { file_id: string; kind: DerivedKind; key: string; bytes: string; sha256: string; media_type: string; width: number | null; height: number | null; detail: Record<string, unknown> } | undefined;
+  return row && { fileId: row.file_id, kind: row.kind, key: row.key, bytes: Number(row.bytes), sha256: row.sha256, mediaType: row.media_type, width: row.width, height: row.height, detail: row.detail };
 }

@@ -35,7 +35,7 @@ export async function loadGateRecords(tx: Tx, revisionId: string, rules: GateRul
   const photos = await tx("fit_photos").join("files", "files.id", "fit_photos.file_id").where("fit_photos.revision_id", revisionId).select("files.id", "files.sha256", "files.state", "fit_photos.fit_check_id", "fit_photos.characteristic_id");
   const results = await of("fit_results").leftJoin("instruments", "instruments.id", "fit_results.instrument_id").join("fit_checks", "fit_checks.id", "fit_results.fit_check_id").select("fit_results.*", "instruments.name as instrument_name", "instruments.trust", "fit_checks.cause");
   const carried = await loadCarryOvers(tx, revisionId);
-  const { answers, callouts } = await loadAnswers(tx, revision.partId, revisionId);
+  const { answers, callouts, pictures } = await loadAnswers(tx, revision.partId, revisionId);
   const instructions = await tx("instructions").where({ revision_id: revisionId }).first();
   const machinist = await tx("machinist_answers").join("machinist_replies", "machinist_replies.id", "machinist_answers.reply_id").where("machinist_answers.revision_id", revisionId).select("machinist_answers.*", "machinist_replies.by_name", "machinist_replies.at", "machinist_replies.model_sha256");
   const questions = await tx("makeability_questions").orderBy("sort");
@@ -71,7 +71,7 @@ export async function loadGateRecords(tx: Tx, revisionId: string, rules: GateRul
       matingPart: row.mating_part_id,
     })),
     matingParts: await tx("mating_parts").where({ job_id: job.id }).orderBy("id").select("id", "name"),
-    photos: [...photos, ...carried.photos].map((row) => ({ id: row.id, sha256: row.sha256, hashVerified: row.state === "stored" })).filter(firstOfId()),
+    photos: [...photos, ...carried.photos, ...pictures].map((row) => ({ id: row.id, sha256: row.sha256, hashVerified: row.state === "stored" })).filter(firstOfId()),
     prints: await loadPrints(tx, revision.ordinal, revisionId),
     fitChecks: (await of("fit_checks")).map((row) => ({ id: row.id, print: row.print_id, matingPart: row.mating_part_id, at: iso(row.at), by: row.by_name })),
     results: results.map((row) => ({
@@ -239,5 +239,6 @@ async function loadAnswers(tx: Tx, partId: string, revisionId: string) {
   }));
   const found = await tx("callouts").where({ revision_id: revisionId }).orderBy("id");
   const callouts: GateRecords["callouts"] = found.map((row) => ({ id: row.id, text: row.body, byCustomer: row.from_customer, open: row.closed_at === null }));
-  return { answers, callouts };
+  const pictures = await tx("files").whereIn("id", rows.map((row) => row.picture_file_id).filter(Boolean)).select("id", "sha256", "state");
+  return { answers, callouts, pictures };
 }

@@ -1,5 +1,5 @@
 import type { Json } from "#app/domain/canonical.ts";
-import { entryHash, FIRST_PREVIOUS_HASH, verifyChain, type ChainedEntry, type ChainVerdict, type LogbookEntry } from "#app/domain/logbook.ts";
+import { entryHash, FIRST_PREVIOUS_HASH, verifyChain, type ChainedEntry, type ChainVerdict, type LogbookEntry, type LogbookHead } from "#app/domain/logbook.ts";
 import type { Viewer } from "#app/domain/viewer.ts";
 import { listPage, type ListPage, type ListQuery } from "./list.server.ts";
 import type { Tx } from "./scope.server.ts";
@@ -100,4 +100,10 @@ export async function listLogbook(tx: Tx, list: ListQuery, filter: { jobId?: str
 export async function checkLogbook(tx: Tx, shopId: string): Promise<ChainVerdict> {
   const rows = (await tx("logbook").where({ shop_id: shopId }).orderBy("seq")) as LogbookRow[];
   return verifyChain(rows.map(toChained));
+}
+
+/** Where the shop's logbook stands; null before the first entry. */
+export async function findLogbookHead(tx: Tx, shopId: string): Promise<LogbookHead | null> {
+  const { rows } = await tx.raw<{ rows: Array<{ seq: string; hash: string }> }>("select * from scope.logbook_head(?)", [shopId]);
+  return rows[0] ? { seq: Number(rows[0].seq), hash: rows[0].hash } : null;
 }

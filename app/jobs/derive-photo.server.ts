@@ -30,9 +30,9 @@ export async function derivePhoto({ shopId, id }: JobPayload): Promise<void> {
       return;
     }
     const key = `${file.key}.${kind}.webp`;
-    await store().put(key, made.data, { contentType: "image/webp" });
+    const { sha256 } = await store().put(key, made.data, { contentType: "image/webp" });
     await inShop(scope, async (tx) => {
-      await putDerivedFile(tx, { shopId: shopId!, jobId: file.jobId, fileId: id, kind, key, bytes: made.data.length, mediaType: "image/webp", width: made.info.width, height: made.info.height });
+      await putDerivedFile(tx, { shopId: shopId!, jobId: file.jobId, fileId: id, kind, key, bytes: made.data.length, sha256, mediaType: "image/webp", width: made.info.width, height: made.info.height });
       await notify(tx, { shopId: shopId!, jobId: file.jobId, topic: "file", id });
     });
   }

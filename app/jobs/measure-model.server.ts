@@ -57,9 +57,9 @@ async function makeViews(shopId: string, file: StoredFile, local: string, signal
   for (const [kind, chord_mm] of [["view-mesh", viewChordMm], ["customer-mesh", customerChordMm]] as const) {
     const made = file.kind === "step" ? await viewMeshFromStep(local, { chord_mm, signal }) : await viewMeshFromStl(await readFile(local), { chord_mm, unit: file.unit ?? "mm" });
     const key = `${file.key}.${kind}.glb`;
-    await store().put(key, made.glb, { contentType: "model/gltf-binary" });
+    const { sha256 } = await store().put(key, made.glb, { contentType: "model/gltf-binary" });
     await inShop(housekeeper(shopId), (tx) =>
-      putDerivedFile(tx, { shopId, jobId: file.jobId, fileId: file.id, kind, key, bytes: made.glb.length, mediaType: "model/gltf-binary", detail: { chord_mm, triangles: made.triangles } }),
+      putDerivedFile(tx, { shopId, jobId: file.jobId, fileId: file.id, kind, key, bytes: made.glb.length, sha256, mediaType: "model/gltf-binary", detail: { chord_mm, triangles: made.triangles } }),
     );
   }
 }

@@ -80,6 +80,7 @@ export async function up(knex: Knex): Promise<void> {
       kind text not null check (kind in ('view-mesh', 'customer-mesh', 'thumbnail', 'screen')),
       key text not null,
       bytes bigint not null,
+      sha256 text not null,
       media_type text not null,
       width integer,
       height integer,
