@@ -16,7 +16,8 @@ const MAY_IMPORT = {
   services: { ...server, folders: ["services", "data", "db", "storage", "jobs", "domain", "engineering", "geometry", "units"] },
   jobs: { ...server, folders: ["jobs", "services", "data", "storage", "kernel", "domain", "engineering", "geometry", "units"] },
   kernel: { ...server, folders: ["kernel", "geometry", "units"] },
-  data: { ...server, folders: ["data", "domain", "db", "units"] },
+  // Of geometry, data takes the shape of a stored measure.
+  data: { ...server, folders: ["data", "domain", "geometry", "db", "units"] },
   storage: { ...server, folders: ["storage"] },
   components: { packages: "any", folders: ["components", "domain", "engineering", "geometry", "units"], browser: true },
   domain: pure,

@@ -1,6 +1,7 @@
 import type { GateRecords } from "#app/domain/gate-records.ts";
 import type { GateLine } from "#app/domain/gate.ts";
 import type { ReleaseManifest } from "#app/domain/manifest.ts";
+import type { ProofWay } from "./sessions.server.ts";
 import { dateText } from "./rows.server.ts";
 import type { Tx } from "./scope.server.ts";
 
@@ -11,17 +12,18 @@ export interface Proposal {
   byPersonId: string;
   byName: string;
   meaning: string;
+  provedBy: ProofWay;
   at: Date;
 }
 
 export async function findOpenProposal(tx: Tx, revisionId: string): Promise<Proposal | undefined> {
-  const row = (await tx("proposals").where({ revision_id: revisionId }).whereNull("withdrawn_at").first()) as { id: string; by_person_id: string; by_name: string; meaning: string; at: Date } | undefined;
-  return row && { id: row.id, byPersonId: row.by_person_id, byName: row.by_name, meaning: row.meaning, at: row.at };
+  const row = (await tx("proposals").where({ revision_id: revisionId }).whereNull("withdrawn_at").first()) as { id: string; by_person_id: string; by_name: string; meaning: string; proved_by: ProofWay; at: Date } | undefined;
+  return row && { id: row.id, provedBy: row.proved_by, byPersonId: row.by_person_id, byName: row.by_name, meaning: row.meaning, at: row.at };
 }
 
-export async function addProposal(tx: Tx, proposal: { shopId: string; jobId: string; revisionId: string; byPersonId: string; byName: string; meaning: string }): Promise<string> {
+export async function addProposal(tx: Tx, proposal: { shopId: string; jobId: string; revisionId: string; byPersonId: string; byName: string; meaning: string; provedBy: ProofWay }): Promise<string> {
   const [row] = await tx("proposals")
-    .insert({ shop_id: proposal.shopId, job_id: proposal.jobId, revision_id: proposal.revisionId, by_person_id: proposal.byPersonId, by_name: proposal.byName, meaning: proposal.meaning })
+    .insert({ shop_id: proposal.shopId, job_id: proposal.jobId, revision_id: proposal.revisionId, by_person_id: proposal.byPersonId, by_name: proposal.byName, meaning: proposal.meaning, proved_by: proposal.provedBy })
     .returning("id");
   return row.id as string;
 }

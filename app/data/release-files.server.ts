@@ -34,10 +34,9 @@ export async function listReleaseFiles(tx: Tx, revisionId: string): Promise<Rele
   const { rows: pictures } = await tx.raw<{ rows: Row[] }>(
     `select d.file_id, 'photo' as role, f.name, d.key, d.bytes, d.sha256 from derived_files d join files f on f.id = d.file_id
      where d.kind = 'screen' and f.kind = 'photo' and f.state = 'stored' and f.id in (
-       select file_id from fit_photos where revision_id = ? union select file_id from revision_files where revision_id = ? and role = 'photo' and removed_at is null
-       union select picture_file_id from customer_answers where revision_id = ? and picture_file_id is not null)
+       select file_id from fit_photos where revision_id = ? union select file_id from revision_files where revision_id = ? and role = 'photo' and removed_at is null)
      order by f.created_at, f.id`,
-    [revisionId, revisionId, revisionId],
+    [revisionId, revisionId],
   );
   const { rows: drawn } = await tx.raw<{ rows: Row[] }>(
     `select d.file_id, 'drawn' as role, 'model.png' as name, d.key, d.bytes, d.sha256 from derived_files d join revision_files rf on rf.file_id = d.file_id

@@ -7,6 +7,8 @@ export interface Membership {
   roles: Role[];
 }
 
+export type ProofWay = "password" | "e-mailed code" | "GitHub" | "guest link";
+
 export interface FoundSession {
   id: string;
   personId: string | null;
@@ -14,6 +16,7 @@ export interface FoundSession {
   shopId: string | null;
   lastSeenAt: Date;
   provedAt: Date;
+  provedBy: ProofWay;
   person: { name: string; email: string; disabled: boolean } | null;
   memberships: Membership[];
 }
@@ -25,6 +28,7 @@ interface SessionRow {
   shop_id: string | null;
   last_seen_at: Date;
   proved_at: Date;
+  proved_by: ProofWay;
   name: string | null;
   email: string | null;
   disabled_at: Date | null;
@@ -34,7 +38,7 @@ interface SessionRow {
 /** The session of this token with its person and memberships, in one query. */
 export async function findSession(tx: Tx, tokenHash: Buffer): Promise<FoundSession | undefined> {
   const { rows } = await tx.raw<{ rows: SessionRow[] }>(
-    `select s.id, s.person_id, s.guest_link_id, s.shop_id, s.last_seen_at, s.proved_at, p.name, p.email, p.disabled_at,
+    `select s.id, s.person_id, s.guest_link_id, s.shop_id, s.last_seen_at, s.proved_at, s.proved_by, p.name, p.email, p.disabled_at,
        (select json_agg(m) from scope.memberships_of(s.person_id) m) as memberships
      from scope.find_session(?) s left join people p on p.id = s.person_id`,
     [tokenHash],
@@ -48,6 +52,7 @@ export async function findSession(tx: Tx, tokenHash: Buffer): Promise<FoundSessi
     shopId: row.shop_id,
     lastSeenAt: row.last_seen_at,
     provedAt: row.proved_at,
+    provedBy: row.proved_by,
     person: row.name === null || row.email === null ? null : { name: row.name, email: row.email, disabled: row.disabled_at !== null },
     memberships: (row.memberships ?? []).map((m) => ({ shopId: m.shop_id, shopName: m.shop_name, roles: m.roles })),
   };
@@ -60,16 +65,18 @@ export interface NewSession {
   shopId: string | null;
   expiresAt: Date;
   userAgent: string;
+  way: ProofWay;
 }
 
 export async function openSession(tx: Tx, session: NewSession): Promise<string> {
-  const { rows } = await tx.raw<{ rows: Array<{ id: string }> }>("select scope.open_session(?, ?, ?, ?, ?, ?) as id", [
+  const { rows } = await tx.raw<{ rows: Array<{ id: string }> }>("select scope.open_session(?, ?, ?, ?, ?, ?, ?) as id", [
     session.tokenHash,
     session.personId,
     session.guestLinkId,
     session.shopId,
     session.expiresAt,
     session.userAgent.slice(0, 300),
+    session.way,
   ]);
   return rows[0]!.id;
 }
@@ -78,8 +85,8 @@ export async function touchSession(tx: Tx, sessionId: string): Promise<void> {
   await tx.raw("select scope.touch_session(?)", [sessionId]);
 }
 
-export async function proveSession(tx: Tx, sessionId: string): Promise<void> {
-  await tx.raw("select scope.prove_session(?)", [sessionId]);
+export async function proveSession(tx: Tx, sessionId: string, way: ProofWay): Promise<void> {
+  await tx.raw("select scope.prove_session(?, ?)", [sessionId, way]);
 }
 
 export async function chooseShop(tx: Tx, sessionId: string, shopId: string): Promise<void> {

@@ -15,6 +15,7 @@ export interface Viewer {
   sessionId: string | null;
   /** When this session last proved who it is; signatures ask for less than five minutes. */
   provedAt: string | null;
+  provedBy: "password" | "e-mailed code" | "GitHub" | "guest link" | null;
 }
 
 export function viewerCan(viewer: Viewer, action: Action): boolean {
@@ -34,5 +35,6 @@ export function housekeeper(shopId: string): Viewer {
     jobs: "*",
     sessionId: null,
     provedAt: null,
+    provedBy: null,
   };
 }

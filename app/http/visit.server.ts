@@ -30,7 +30,7 @@ async function findVisitor(token: string): Promise<{ session: FoundSession | nul
     if (!session || Date.now() - session.lastSeenAt.getTime() > idleLimit) return { session: null, viewer: null };
     if (session.person?.disabled) return { session: null, viewer: null };
     await touchSession(tx, session.id);
-    const shared = { sessionId: session.id, provedAt: session.provedAt.toISOString() };
+    const shared = { sessionId: session.id, provedAt: session.provedAt.toISOString(), provedBy: session.provedBy };
 
     if (session.guestLinkId) {
       const link = await findGuestLink(tx, session.guestLinkId);

@@ -1,6 +1,7 @@
 import type { JobPayload, QueueName } from "./queues.ts";
 import { checkFile } from "./check-file.server.ts";
 import { derivePhoto } from "./derive-photo.server.ts";
+import { makePacket } from "./make-packet.server.ts";
 import { sendMail } from "./send-mail.server.ts";
 import { sweep } from "./sweep.server.ts";
 
@@ -10,6 +11,7 @@ export type Handler = (job: JobPayload, stopping: AbortSignal) => Promise<void>;
 export const handlers: Partial<Record<QueueName, Handler>> = {
   "check-file": checkFile,
   "derive-photo": derivePhoto,
+  "make-packet": makePacket,
   "send-mail": sendMail,
   sweep,
 };

@@ -31,6 +31,12 @@ export const meanings = {
   refuses: "I decide that this revision may not be cut.",
 } as const;
 
+/** Guests don't sign: their link proves a device, not a person. */
+function signingWay(way: Viewer["provedBy"]): ManifestSignature["by"] {
+  if (way === null || way === "guest link") throw new TypeError("only people with an account sign");
+  return way;
+}
+
 export type GateRefusal =
   | { ok: false; reason: "prove" }
   | { ok: false; reason: "released" }
@@ -55,7 +61,7 @@ export async function proposeRevision(viewer: Viewer, revisionId: string): Promi
     if (!evaluated.records.models.some(({ kind }) => kind === "step")) blocked.push("there is no STEP yet");
     if (blocked.length > 0) return { ok: false, reason: "not-proposable", missing: blocked };
     if (await findOpenProposal(tx, revisionId)) return { ok: true };
-    await addProposal(tx, { shopId: viewer.shopId, jobId: revision.jobId, revisionId, byPersonId: viewer.personId!, byName: viewer.name, meaning: meanings.proposes });
+    await addProposal(tx, { shopId: viewer.shopId, jobId: revision.jobId, revisionId, byPersonId: viewer.personId!, byName: viewer.name, meaning: meanings.proposes, provedBy: viewer.provedBy! });
     await notify(tx, { shopId: viewer.shopId, jobId: revision.jobId, topic: "gate", id: revisionId });
     await writeLog(tx, logOf(viewer, "put a revision to the gate", { type: "revision", id: revisionId, jobId: revision.jobId }, { ordinal: revision.ordinal, recordsHash: evaluated.result.recordsHash }));
     return { ok: true };
@@ -150,7 +156,7 @@ function common(viewer: Viewer, revision: Revision, { records, result }: Evaluat
 /** What changed between the records that the owner saw and those of now, in sentences. */
 function changesSince(seen: unknown, now: GateRecords): string[] {
   const before = gateRecords.safeParse(seen);
-  return before.success ? describeChanges(before.data, now) : ["the records are not the ones that this page showed"];
+  return before.success ? describeChanges(before.data, now).map(({ what }) => what) : ["the records are not the ones that this page showed"];
 }
 
 /**
@@ -180,8 +186,8 @@ export async function releaseRevision(viewer: Viewer, revisionId: string, seen: 
     const decision = result.lines.some(({ state }) => state === "conceded") ? "go with concession" : "go";
     const letter = nextReleaseLetter(await findLatestLetter(tx, revision.partId));
     const meaning = samePerson ? meanings.both : meanings.decides;
-    const decided: ManifestSignature = { part: samePerson ? "proposes and decides" : "decides", name: viewer.name, at: base.at, meaning, by: "password" };
-    const signatures: ManifestSignature[] = samePerson ? [decided] : [{ part: "proposes", name: proposal.byName, at: proposal.at.toISOString(), meaning: proposal.meaning, by: "password" }, decided];
+    const decided: ManifestSignature = { part: samePerson ? "proposes and decides" : "decides", name: viewer.name, at: base.at, meaning, by: signingWay(viewer.provedBy) };
+    const signatures: ManifestSignature[] = samePerson ? [decided] : [{ part: "proposes", name: proposal.byName, at: proposal.at.toISOString(), meaning: proposal.meaning, by: signingWay(proposal.provedBy) }, decided];
 
     const part = orNotFound(await findPart(tx, revision.partId));
     const job = orNotFound(await findJob(tx, revision.jobId));
@@ -213,7 +219,7 @@ export async function releaseRevision(viewer: Viewer, revisionId: string, seen: 
       samePerson,
     });
     await addPacket(tx, { shopId: viewer.shopId, jobId: job.id, decisionId: base.id });
-    await sealRevision(tx, revisionId, { shopId: viewer.shopId, jobId: job.id, fileIds: files.map(({ fileId }) => fileId) });
+    await sealRevision(tx, revisionId, { shopId: viewer.shopId, jobId: job.id, fileIds: [...files.map(({ fileId }) => fileId), ...records.photos.map(({ id }) => id)] });
     await sendJob(tx, "make-packet", { shopId: viewer.shopId, id: base.id });
     await notify(tx, { shopId: viewer.shopId, jobId: job.id, topic: "gate", id: revisionId });
     await writeLog(tx, logOf(viewer, `decided ${decision}`, { type: "revision", id: revisionId, jobId: job.id }, { ordinal: revision.ordinal, letter, recordsHash: result.recordsHash, samePerson }));

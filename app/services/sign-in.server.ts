@@ -1,7 +1,7 @@
 import { inShop, outsideShops } from "#app/data/scope.server.ts";
 import { addSignInLink, takeSignInLink } from "#app/data/sign-in-links.server.ts";
 import { findPerson, findPersonByEmail, type Person } from "#app/data/people.server.ts";
-import { findMemberships, openSession, proveSession } from "#app/data/sessions.server.ts";
+import { findMemberships, openSession, proveSession, type ProofWay } from "#app/data/sessions.server.ts";
 import { writeLog } from "#app/data/logbook.server.ts";
 import { housekeeper } from "#app/domain/viewer.ts";
 import { env } from "#app/env.server.ts";
@@ -29,13 +29,13 @@ export async function signInWithPassword(input: { email: string; password: strin
 }
 
 /** Opens a session of this person; owners of a shop stay signed in for a shorter time. */
-export async function startSession(person: Pick<Person, "id" | "name">, userAgent: string, way: string): Promise<SignInResult & { ok: true }> {
+export async function startSession(person: Pick<Person, "id" | "name">, userAgent: string, way: ProofWay): Promise<SignInResult & { ok: true }> {
   const { token, tokenHash } = newToken();
   const { memberships, expiresAt } = await outsideShops(async (tx) => {
     const memberships = await findMemberships(tx, person.id);
     const life = memberships.some((m) => m.roles.includes("owner")) ? ownerLife : absoluteLife;
     const expiresAt = new Date(Date.now() + life);
-    await openSession(tx, { tokenHash, personId: person.id, guestLinkId: null, shopId: memberships[0]?.shopId ?? null, expiresAt, userAgent });
+    await openSession(tx, { tokenHash, personId: person.id, guestLinkId: null, shopId: memberships[0]?.shopId ?? null, expiresAt, userAgent, way });
     return { memberships, expiresAt };
   });
   const shop = memberships[0];
@@ -76,7 +76,7 @@ export async function signInWithLink(token: string, userAgent: string): Promise<
     return link && findPerson(tx, link.personId);
   });
   if (!person || person.disabled) return { ok: false, reason: "wrong" };
-  return startSession(person, userAgent, "link");
+  return startSession(person, userAgent, "e-mailed code");
 }
 
 /** Proves again who is at the keyboard, before a signature. */
@@ -85,7 +85,7 @@ export async function proveWithPassword(input: { personId: string; sessionId: st
   return outsideShops(async (tx) => {
     const person = await findPerson(tx, input.personId);
     if (!person || !(await passwordMatches(person.passwordHash, input.password))) return { ok: false, reason: "wrong" };
-    await proveSession(tx, input.sessionId);
+    await proveSession(tx, input.sessionId, "password");
     return { ok: true };
   });
 }

@@ -72,6 +72,7 @@ export async function up(knex: Knex): Promise<void> {
       created_at timestamptz not null default now(),
       last_seen_at timestamptz not null default now(),
       proved_at timestamptz not null default now(),
+      proved_by text not null check (proved_by in ('password', 'e-mailed code', 'GitHub', 'guest link')),
       expires_at timestamptz not null,
       user_agent text not null default '',
       check (num_nonnulls(person_id, guest_link_id) = 1)
@@ -80,6 +81,7 @@ export async function up(knex: Knex): Promise<void> {
     create index sessions_guest_link on sessions (guest_link_id);
     comment on column sessions.token_hash is 'SHA-256 of the cookie''s token: a stolen table opens nothing';
     comment on column sessions.proved_at is 'last sign-in or re-authentication; a signature asks for less than five minutes';
+    comment on column sessions.proved_by is 'the way it was proved, which a signature states';
     comment on column sessions.shop_id is 'the shop this session looks at; null until one is chosen';
 
     create table sign_in_links (
@@ -104,16 +106,16 @@ export async function up(knex: Knex): Promise<void> {
     create policy in_shop on sessions to public using (shop_id = scope.shop_id() and scope.sees_all_jobs());
     grant select on sessions to spotblue_app;
 
-    create function scope.open_session(hash bytea, person uuid, guest_link uuid, shop uuid, expires timestamptz, agent text)
+    create function scope.open_session(hash bytea, person uuid, guest_link uuid, shop uuid, expires timestamptz, agent text, way text)
       returns uuid language sql security definer set search_path = public as
-      $$ insert into sessions (token_hash, person_id, guest_link_id, shop_id, expires_at, user_agent)
-         values (hash, person, guest_link, shop, expires, agent) returning id $$;
+      $$ insert into sessions (token_hash, person_id, guest_link_id, shop_id, expires_at, user_agent, proved_by)
+         values (hash, person, guest_link, shop, expires, agent, way) returning id $$;
     create function scope.find_session(hash bytea) returns setof sessions language sql stable security definer set search_path = public as
       $$ select * from sessions where token_hash = hash and expires_at > now() $$;
     create function scope.touch_session(session uuid) returns void language sql security definer set search_path = public as
       $$ update sessions set last_seen_at = now() where id = session and last_seen_at < now() - interval '1 minute' $$;
-    create function scope.prove_session(session uuid) returns void language sql security definer set search_path = public as
-      $$ update sessions set proved_at = now() where id = session $$;
+    create function scope.prove_session(session uuid, way text) returns void language sql security definer set search_path = public as
+      $$ update sessions set proved_at = now(), proved_by = way where id = session $$;
     create function scope.choose_shop(session uuid, shop uuid) returns void language sql security definer set search_path = public as
       $$ update sessions set shop_id = shop where id = session $$;
     create function scope.end_session(session uuid, person uuid) returns integer language sql security definer set search_path = public as

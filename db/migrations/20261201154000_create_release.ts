@@ -11,6 +11,7 @@ export async function up(knex: Knex): Promise<void> {
       by_person_id uuid not null references people (id),
       by_name text not null,
       meaning text not null,
+      proved_by text not null,
       at timestamptz not null default now(),
       withdrawn_at timestamptz,
       unique (shop_id, id),

@@ -37,7 +37,7 @@ export async function seedPeople(): Promise<DemoPeople> {
     const person = signIns.find((one) => one.role === role)!;
     const personId = ids.get(role)!;
     const jobs = isKeptToJobs([role]) ? await outsideShops((tx) => listJobsOf(tx, shopId, personId, [role])) : "*";
-    return { personId, guestLinkId: null, name: person.name, email: person.email, shopId, shopName: demoShopName, roles: [role], jobs, sessionId: null, provedAt: null };
+    return { personId, guestLinkId: null, name: person.name, email: person.email, shopId, shopName: demoShopName, roles: [role], jobs, sessionId: null, provedAt: null, provedBy: null };
   };
   return { owner: await viewerOf("owner"), designer: await viewerOf("designer"), machinist: await viewerOf("machinist"), customer: await viewerOf("customer") };
 }
