@@ -1,3 +1,4 @@
+import type { RecognisedHole } from "#app/geometry/holes.ts";
 import type { MeasureDocument } from "#app/geometry/measure-document.ts";
 
 /** What the kernel's process is asked to do; one task a process. */
@@ -15,7 +16,7 @@ export type KernelMessage =
   | { kind: "done"; result: StepMeasures | TessellationIndex; bytes: number };
 
 /** The kernel's part of a measure document. */
-export type StepMeasures = Omit<MeasureDocument, "file" | "mesh"> & { products: string[] };
+export type StepMeasures = Omit<MeasureDocument, "file" | "mesh" | "holes"> & { products: string[]; holes: RecognisedHole[] };
 
 export type FaceKind = "plane" | "cylinder" | "cone" | "torus" | "sphere" | "other";
 

@@ -1,3 +1,7 @@
+import type { FaceRecord } from "#app/geometry/face-record.ts";
+import { findHoles } from "#app/geometry/holes.ts";
+import { findCircles } from "#app/geometry/patterns.ts";
+import { faceRecords } from "./face-records.server.ts";
 import { readStep, type ReadStep } from "./read-step.server.ts";
 import type { Kernel } from "./open-kernel.server.ts";
 import type { StepMeasures } from "./kernel-protocol.ts";
@@ -20,7 +24,24 @@ export function measureInKernel(kernel: Kernel, path: string, onProgress: (share
   onProgress(0.7, "checking");
   const fault = firstFault(kernel, solids);
   if (fault !== null) warnings.push(fault);
-  return { ...common, ...nothing, ...measures, solid: { solids: solids.length, faces: 0, valid: fault === null } };
+  onProgress(0.8, "finding holes");
+  const faces = faceRecords(kernel, solids);
+  const holes = findHoles(faces);
+  return {
+    ...common,
+    ...measures,
+    solid: { solids: solids.length, faces: faces.length, valid: fault === null },
+    holes,
+    patterns: findCircles(holes, faces.filter(({ kind }) => kind === "cylinder")),
+    smallestInsideRadius_mm: smallestInsideRadius(faces),
+    thinnestWall_mm: null,
+  };
+}
+
+/** Of the hollow cylinders, fillets and balls: what limits the cutter. */
+function smallestInsideRadius(faces: FaceRecord[]): number | null {
+  const radii = faces.filter(({ concave, radius_mm }) => concave && radius_mm > 0).map(({ radius_mm }) => radius_mm);
+  return radii.length > 0 ? radii.reduce((a, b) => Math.min(a, b)) : null;
 }
 
 function unitWarnings({ text }: ReadStep): string[] {

@@ -9,8 +9,8 @@ export interface MeasureStepOptions extends KernelRun {
   bytes: number;
 }
 
-/** A STEP file's document also names its products: parts and assemblies, in file order. */
-export type StepDocument = MeasureDocument & { products: string[] };
+/** A STEP file's document also names its products (parts and assemblies, in file order) and says more of each hole. */
+export type StepDocument = MeasureDocument & Pick<StepMeasures, "products" | "holes">;
 
 /**
  * What is there to know about this STEP file?
