@@ -4,6 +4,8 @@ import { index, layout, prefix, route, type RouteConfig } from "@react-router/de
 export default [
   route("sign-in", "routes/sign-in.tsx"),
   route("sign-in/link/:token", "routes/sign-in-link.tsx"),
+  route("prove", "routes/prove.tsx"),
+  route("prove/link/:token", "routes/prove-link.tsx"),
   route("sign-out", "routes/sign-out.tsx"),
   route("preferences", "routes/preferences.tsx"),
   route("health", "routes/health.ts"),
@@ -16,6 +18,12 @@ export default [
     route("jobs/new", "routes/job-edit.tsx", { id: "job-new" }),
     route("jobs/:jobId", "routes/job.tsx"),
     route("jobs/:jobId/edit", "routes/job-edit.tsx"),
+
+    // The gate and what comes of it
+    route("revisions/:revisionId/gate", "routes/gate.tsx"),
+    route("revisions/:revisionId/cautions", "routes/cautions.tsx"),
+    route("packets/:decisionId", "routes/packet.tsx"),
+    route("packets/:decisionId/download", "routes/packet-download.ts"),
 
     // Customers
     route("customers", "routes/customers.tsx"),

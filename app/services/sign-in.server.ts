@@ -89,3 +89,33 @@ export async function proveWithPassword(input: { personId: string; sessionId: st
     return { ok: true };
   });
 }
+
+/** Mails a link that proves who is at the keyboard of this session. */
+export async function sendProofLink(input: { personId: string; sessionId: string; next: string }): Promise<boolean> {
+  if (!(await allow("link", `prove:${input.personId}`))) return false;
+  await outsideShops(async (tx) => {
+    const person = await findPerson(tx, input.personId);
+    if (!person || person.disabled) return;
+    const { token, tokenHash } = newToken();
+    const linkId = await addSignInLink(tx, { tokenHash, personId: person.id, purpose: "prove", sessionId: input.sessionId, expiresAt: new Date(Date.now() + linkLife) });
+    await queueMail(tx, {
+      shopId: null,
+      onceKey: `prove-link:${linkId}`,
+      to: person.email,
+      subject: "Prove that it is you, to sign",
+      paragraphs: ["You are about to sign a decision in Spotblue. This link proves that it is you. It works once, for 15 minutes.", "If it was not you, tell the shop: somebody sits at your session."],
+      action: { label: "It is me", url: `${env.APP_ORIGIN}/prove/link/${token}?next=${encodeURIComponent(input.next)}` },
+    });
+  });
+  return true;
+}
+
+/** Takes such a link, once; it proves the session that asked for it, and no other. */
+export async function proveWithLink(token: string, sessionId: string): Promise<boolean> {
+  return outsideShops(async (tx) => {
+    const link = await takeSignInLink(tx, hashToken(token), "prove");
+    if (!link || link.sessionId !== sessionId) return false;
+    await proveSession(tx, sessionId, "e-mailed code");
+    return true;
+  });
+}

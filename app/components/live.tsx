@@ -1,0 +1,34 @@
+import { useEffect } from "react";
+import { useRevalidator } from "react-router";
+
+/** Several notices of one burst load the page again once. */
+const gatherMs = 150;
+
+/**
+ * Keeps a page of a job as it is in the database: when something of the job changes, its data is
+ * loaded again. A page opened later reads the same state from its loader.
+ */
+export function useLive(jobId: string): void {
+  const { revalidate } = useRevalidator();
+  useEffect(() => {
+    let timer: ReturnType<typeof setTimeout> | undefined;
+    let connectedBefore = false;
+    const reload = () => {
+      clearTimeout(timer);
+      timer = setTimeout(() => void revalidate(), gatherMs);
+    };
+    const source = new EventSource("/api/events");
+    source.onmessage = ({ data }: MessageEvent<string>) => {
+      const event = JSON.parse(data) as { topic: string; jobId?: string };
+      // After a lost connection anything may have happened meanwhile.
+      if (event.topic === "hello") {
+        if (connectedBefore) reload();
+        connectedBefore = true;
+      } else if (event.jobId === jobId) reload();
+    };
+    return () => {
+      clearTimeout(timer);
+      source.close();
+    };
+  }, [jobId, revalidate]);
+}
