@@ -90,7 +90,7 @@ export function githubRefusal(error: unknown): string | undefined {
     return error.code === "access_denied" ? "You cancelled the sign-in at GitHub." : "GitHub did not accept this sign-in. Start it again; a link from GitHub works once and for ten minutes.";
   }
   // What the strategy throws when cookie, state or code are missing or belong to another start.
-  if (error instanceof ReferenceError || error instanceof RangeError) return "This sign-in was started in another window or too long ago. Start it again.";
+  if ((error instanceof ReferenceError || error instanceof RangeError) && /\b(state|code) (on|in)\b/i.test(error.message)) return "This sign-in was started in another window or too long ago. Start it again.";
   if (error instanceof ArcticFetchError || error instanceof GithubAnswerFault || error instanceof UnexpectedResponseError || error instanceof UnexpectedErrorResponseBodyError) {
     return "GitHub could not be reached. Try again, or sign in by password or e-mailed link.";
   }

@@ -6,7 +6,6 @@ const NAMED: Record<string, string> = { "&": "&amp;", "<": "&lt;", ">": "&gt;", 
 
 /** Text as it may stand in an element, line ends and control characters included. */
 function escapeText(text: string): string {
-  // eslint-disable-next-line no-control-regex -- a key may hold control characters, and S3 writes them so
   return text.replace(/[&<>"\u0000-\u001f\u007f]/g, (c) => NAMED[c] ?? `&#x${c.charCodeAt(0).toString(16)};`);
 }
 
