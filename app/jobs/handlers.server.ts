@@ -2,6 +2,7 @@ import type { JobPayload, QueueName } from "./queues.ts";
 import { checkFile } from "./check-file.server.ts";
 import { derivePhoto } from "./derive-photo.server.ts";
 import { makePacket } from "./make-packet.server.ts";
+import { measureModel } from "./measure-model.server.ts";
 import { sendMail } from "./send-mail.server.ts";
 import { sweep } from "./sweep.server.ts";
 
@@ -12,6 +13,7 @@ export const handlers: Partial<Record<QueueName, Handler>> = {
   "check-file": checkFile,
   "derive-photo": derivePhoto,
   "make-packet": makePacket,
+  "measure-model": measureModel,
   "send-mail": sendMail,
   sweep,
 };

@@ -19,12 +19,12 @@ export async function action({ request, context }: Route.ActionArgs) {
   const returnTo = safeNext(String(form.get("returnTo") ?? ""));
   if (form.get("intent") === "link") {
     const sent = await sendProofLink({ personId, sessionId: session.id, next: returnTo });
-    return data({ returnTo, sent, errors: sent ? {} : { form: ["Too many tries. Wait a quarter of an hour."] } }, { status: sent ? 200 : 429 });
+    return data({ returnTo, sent, errors: (sent ? {} : { form: ["Too many tries. Wait a quarter of an hour."] }) as Record<string, string[]> }, { status: sent ? 200 : 429 });
   }
   const proved = await proveWithPassword({ personId, sessionId: session.id, password: String(form.get("password") ?? "") });
   if (proved.ok) return redirect(returnTo);
-  const said = proved.reason === "wrong" ? { password: ["This is not your password."] } : { form: ["Too many tries. Wait a quarter of an hour."] };
-  return data({ returnTo, sent: false, errors: said as Record<string, string[]> }, { status: 400 });
+  const said: Record<string, string[]> = proved.reason === "wrong" ? { password: ["This is not your password."] } : { form: ["Too many tries. Wait a quarter of an hour."] };
+  return data({ returnTo, sent: false, errors: said }, { status: 400 });
 }
 
 export default function ProvePage({ loaderData, actionData }: Route.ComponentProps) {
