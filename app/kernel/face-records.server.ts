@@ -3,11 +3,10 @@ import { cylinderThrough } from "#app/geometry/cylinder-in-disguise.ts";
 import type { FaceRecord, FaceSide } from "#app/geometry/face-record.ts";
 import type { Vec3 } from "#app/geometry/measure-document.ts";
 import { dot, length, minus, moved, scaled, unit } from "#app/geometry/vec3.ts";
-import type { FaceKind } from "./kernel-protocol.ts";
 import { partsOf, type Kernel } from "./open-kernel.server.ts";
 import { triple } from "./solid-measures.server.ts";
 
-const KINDS: Partial<Record<string, FaceKind>> = {
+const KINDS: Partial<Record<string, FaceRecord["kind"]>> = {
   GeomAbs_Plane: "plane", GeomAbs_Cylinder: "cylinder", GeomAbs_Cone: "cone", GeomAbs_Torus: "torus", GeomAbs_Sphere: "sphere",
 };
 /** Of an arc, per point; of a curve without a name, points in all. */
@@ -24,6 +23,8 @@ export function faceRecords(kernel: Kernel, solids: TopoDS_Shape[]): FaceRecord[
   return solids.flatMap((solid, index) =>
     partsOf(kernel, solid, TopAbs_FACE).map((part): FaceRecord => {
       const face = kernel.TopoDS.Face(part);
+      // Only triangles: there is no surface to ask.
+      if (!kernel.BRep_Tool.IsGeometric(face)) return { solid: index, kind: "other", origin: NONE, direction: NONE, radius_mm: 0, concave: false, sides: [] };
       const surface = surfaceOf(kernel, face);
       const sides = partsOf(kernel, face, TopAbs_EDGE).flatMap((one): FaceSide[] => {
         const edge = kernel.TopoDS.Edge(one);

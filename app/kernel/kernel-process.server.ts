@@ -1,9 +1,12 @@
 // An entry of its own: one task, one answer, then the process ends and gives its memory back.
 import { createWriteStream } from "node:fs";
+import { Readable } from "node:stream";
+import { pipeline } from "node:stream/promises";
 import { Worker } from "node:worker_threads";
 import { UnreadableModel } from "#app/geometry/measure-document.ts";
 import { measureInKernel } from "./measure-in-kernel.server.ts";
 import { openKernel } from "./open-kernel.server.ts";
+import { tessellateInKernel } from "./tessellate-in-kernel.server.ts";
 import { BINARY_PIPE, type KernelMessage, type KernelTask } from "./kernel-protocol.ts";
 
 // While the kernel computes, this thread hears nothing: a second one ends the process when its parent is gone.
@@ -23,6 +26,10 @@ async function perform(task: KernelTask): Promise<void> {
     progress(0, "starting");
     const kernel = await openKernel();
     if (task.kind === "measure") return await say({ kind: "done", result: measureInKernel(kernel, task.path, progress), bytes: 0 });
+    const { parts, ...result } = tessellateInKernel(kernel, task.path, task.chord_mm, progress);
+    const bytes = parts.reduce((sum, part) => sum + part.length, 0);
+    await pipeline(Readable.from(parts), createWriteStream("", { fd: BINARY_PIPE }));
+    await say({ kind: "done", result, bytes });
   } catch (error) {
     // Anything else is a trap of the kernel: it ends the process, and the parent finds the words.
     if (!(error instanceof UnreadableModel)) process.exit(70);
@@ -33,5 +40,3 @@ async function perform(task: KernelTask): Promise<void> {
 function say(message: KernelMessage): Promise<void> {
   return new Promise((settle, fail) => process.send!(message, undefined, {}, (error) => (error ? fail(error) : settle())));
 }
-void createWriteStream;
-void BINARY_PIPE;

@@ -1,12 +1,11 @@
+import type { FaceRecord } from "#app/geometry/face-record.ts";
 import type { RecognisedHole } from "#app/geometry/holes.ts";
 import type { MeasureDocument } from "#app/geometry/measure-document.ts";
 
 /** What the kernel's process is asked to do; one task a process. */
 export type KernelTask =
   | { kind: "measure"; path: string }
-  | { kind: "tessellate"; path: string; chord_mm: number }
-  /** Reads and then never answers, so that the limits can be tried on a process that is truly busy. */
-  | { kind: "spin"; path: string; grow: boolean };
+  | { kind: "tessellate"; path: string; chord_mm: number };
 
 /** What it says back, over the channel between the processes. */
 export type KernelMessage =
@@ -18,13 +17,11 @@ export type KernelMessage =
 /** The kernel's part of a measure document. */
 export type StepMeasures = Omit<MeasureDocument, "file" | "mesh" | "holes"> & { products: string[]; holes: RecognisedHole[] };
 
-export type FaceKind = "plane" | "cylinder" | "cone" | "torus" | "sphere" | "other";
-
 export interface TessellatedFace {
   /** Into the indices, three a triangle. */
   firstIndex: number;
   indexCount: number;
-  kind: FaceKind;
+  kind: FaceRecord["kind"];
   /** What a person calls it: "plane", "bore Ø 6.60". */
   label: string;
 }
@@ -35,6 +32,8 @@ export interface TessellationIndex {
   normals: number;
   indices: number;
   edges: number;
+  /** What was kept to: less than asked for a part that is small against it. */
+  chord_mm: number;
   faces: TessellatedFace[];
 }
 

@@ -50,15 +50,15 @@ function unitWarnings({ text }: ReadStep): string[] {
   return [];
 }
 
-function bodyWarnings({ solids, triangulatedSolids, looseFaces }: ReadStep): string[] {
+function bodyWarnings({ solids, triangulated, looseFaces }: ReadStep): string[] {
   const faces = `${looseFaces.length} surface${looseFaces.length === 1 ? "" : "s"}`;
   if (solids.length > 0) {
     return [
-      ...(triangulatedSolids > 0 ? [`${triangulatedSolids} of its bodies are only triangles (tessellated) and were left out.`] : []),
+      ...(triangulated.length > 0 ? [`${triangulated.length} of its bodies are only triangles (tessellated) and were left out.`] : []),
       ...(looseFaces.length > 0 ? [`${faces} outside the solid (construction or annotation) were left out of all measures.`] : []),
     ];
   }
-  if (triangulatedSolids > 0) return ["The file holds only triangles (tessellated geometry), no solid: nothing was measured. Export it with exact geometry (B-rep)."];
+  if (triangulated.length > 0) return ["The file holds only triangles (tessellated geometry), no solid: nothing was measured. Export it with exact geometry (B-rep)."];
   if (looseFaces.length > 0) return [`The file holds ${faces} but no closed solid: nothing was measured. Close the body in the CAD program and export it as a solid.`];
   return ["The file holds no solid and no surface: nothing was measured. If it refers to other files, export the assembly as one file."];
 }

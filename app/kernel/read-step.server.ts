@@ -13,7 +13,7 @@ export interface ReadStep {
   /** Solids with exact faces, each once per placement. */
   solids: TopoDS_Shape[];
   /** Solids that are only triangles: they have no exact measures. */
-  triangulatedSolids: number;
+  triangulated: TopoDS_Shape[];
   /** Faces that belong to no solid: construction surfaces, or a body that isn't closed. */
   looseFaces: TopoDS_Shape[];
 }
@@ -38,10 +38,10 @@ export function readStep(kernel: Kernel, path: string): ReadStep {
   if (reader.NbRootsForTransfer() === 0) throw new UnreadableModel("holds no shape that can be read; save the part again as STEP, with its solid");
   reader.TransferRoots(new kernel.Message_ProgressRange());
   const shape = reader.OneShape();
-  if (shape.IsNull()) return { text, solids: [], triangulatedSolids: 0, looseFaces: [] };
+  if (shape.IsNull()) return { text, solids: [], triangulated: [], looseFaces: [] };
 
   const { TopAbs_SOLID, TopAbs_FACE } = kernel.TopAbs_ShapeEnum;
   const all = partsOf(kernel, shape, TopAbs_SOLID);
   const solids = all.filter((solid) => partsOf(kernel, solid, TopAbs_FACE).every((face) => kernel.BRep_Tool.IsGeometric(kernel.TopoDS.Face(face))));
-  return { text, solids, triangulatedSolids: all.length - solids.length, looseFaces: partsOf(kernel, shape, TopAbs_FACE, TopAbs_SOLID) };
+  return { text, solids, triangulated: all.filter((solid) => !solids.includes(solid)), looseFaces: partsOf(kernel, shape, TopAbs_FACE, TopAbs_SOLID) };
 }
