@@ -19,6 +19,10 @@ export default [
     route("jobs/:jobId", "routes/job.tsx"),
     route("jobs/:jobId/edit", "routes/job-edit.tsx"),
 
+    // What backs a revision
+    route("revisions/:revisionId/instructions", "routes/instructions.tsx"),
+    route("revisions/:revisionId/makeability", "routes/makeability.tsx"),
+
     // The gate and what comes of it
     route("revisions/:revisionId/gate", "routes/gate.tsx"),
     route("revisions/:revisionId/cautions", "routes/cautions.tsx"),

@@ -3,12 +3,16 @@ import { mkdtemp, readFile, rm } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { pipeline } from "node:stream/promises";
+import sharp from "sharp";
 import { findFile, putDerivedFile, putMeasure, type StoredFile } from "#app/data/files.server.ts";
 import { notify } from "#app/data/events.server.ts";
 import { inShop } from "#app/data/scope.server.ts";
 import { housekeeper } from "#app/domain/viewer.ts";
 import { UnreadableModel, type MeasureDocument } from "#app/geometry/measure-document.ts";
 import { measureStl } from "#app/geometry/measure-stl.ts";
+import { drawPicture } from "#app/geometry/draw-picture.ts";
+import { readStl } from "#app/geometry/stl-reader.ts";
+import { tessellateStep } from "#app/kernel/tessellate-step.server.ts";
 import { measureStep } from "#app/kernel/measure-step.server.ts";
 import { viewMeshFromStep, viewMeshFromStl } from "#app/kernel/view-mesh.server.ts";
 import { store } from "#app/services/store.server.ts";
@@ -44,6 +48,8 @@ export async function measureModel({ shopId, id }: JobPayload, stopping: AbortSi
       : measureStl(await readFile(local), { name: file.name, sha256: file.sha256, unit: file.unit ?? undefined });
     await say("running", { progress: 0.6, step: "making the view", document });
     await makeViews(scope.shopId, file, local, stopping);
+    await say("running", { progress: 0.9, step: "drawing the picture", document });
+    await makePicture(scope.shopId, file, local, stopping);
     await say("done", { progress: 1, document });
   } catch (fault) {
     if (!(fault instanceof UnreadableModel)) throw fault;
@@ -52,6 +58,18 @@ export async function measureModel({ shopId, id }: JobPayload, stopping: AbortSi
     await rm(folder, { recursive: true, force: true });
   }
 }
+
+/** The picture of the lists, of Today and of the release sheet. */
+async function makePicture(shopId: string, file: StoredFile, local: string, signal: AbortSignal): Promise<void> {
+  const mesh = file.kind === "step" ? await tessellateStep(local, { chord_mm: customerChordMm, signal }) : soup(readStl(await readFile(local)).positions);
+  const { width, height, pixels } = drawPicture(mesh.positions, mesh.indices, 480, 360);
+  const png = await sharp(Buffer.from(pixels.buffer), { raw: { width, height, channels: 4 } }).png({ compressionLevel: 9 }).toBuffer();
+  const key = `${file.key}.thumbnail.png`;
+  const { sha256, bytes } = await store().put(key, png, { contentType: "image/png" });
+  await inShop(housekeeper(shopId), (tx) => putDerivedFile(tx, { shopId, jobId: file.jobId, fileId: file.id, kind: "thumbnail", key, bytes, sha256, mediaType: "image/png", width, height }));
+}
+
+const soup = (positions: Float32Array) => ({ positions, indices: Uint32Array.from({ length: positions.length / 3 }, (_, i) => i) });
 
 async function makeViews(shopId: string, file: StoredFile, local: string, signal: AbortSignal): Promise<void> {
   for (const [kind, chord_mm] of [["view-mesh", viewChordMm], ["customer-mesh", customerChordMm]] as const) {
