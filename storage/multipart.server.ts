@@ -1,6 +1,6 @@
 import {
   AbortMultipartUploadCommand, CompleteMultipartUploadCommand, CreateMultipartUploadCommand, UploadPartCommand,
-  paginateListParts, type S3Client, ListMultipartUploadsCommand,
+  ListMultipartUploadsCommand, type ListMultipartUploadsCommandOutput, ListPartsCommand, type ListPartsCommandOutput, type S3Client,
 } from "@aws-sdk/client-s3";
 import { getSignedUrl } from "@aws-sdk/s3-request-presigner";
 import { StoreError } from "./store-error.ts";
@@ -32,9 +32,13 @@ export function multipartOf({ client, publicClient, Bucket, call, head }: Around
     try {
       return await call(`Listing the parts of ${key}`, async () => {
         const parts: StoredPart[] = [];
-        for await (const page of paginateListParts({ client }, { Bucket, Key: key, UploadId: uploadId })) {
+        // The SDK's paginator asks on and on: stores name a next part after the last one too.
+        let marker: string | undefined;
+        do {
+          const page: ListPartsCommandOutput = await client.send(new ListPartsCommand({ Bucket, Key: key, UploadId: uploadId, PartNumberMarker: marker }));
           for (const { PartNumber, ETag, Size } of page.Parts ?? []) parts.push({ partNumber: PartNumber!, etag: ETag!, bytes: Size ?? 0 });
-        }
+          marker = page.IsTruncated ? page.NextPartNumberMarker : undefined;
+        } while (marker !== undefined);
         return parts;
       });
     } catch (error) {
@@ -91,9 +95,9 @@ export function multipartOf({ client, publicClient, Bucket, call, head }: Around
     async listUnfinished(olderThan: Date): Promise<UnfinishedUpload[]> {
       return call("Listing unfinished uploads", async () => {
         const found: UnfinishedUpload[] = [];
-        let next: { KeyMarker?: string; UploadIdMarker?: string } | undefined = {};
+        let next: { KeyMarker?: string | undefined; UploadIdMarker?: string | undefined } | undefined = {};
         while (next) {
-          const page: Awaited<ReturnType<typeof listUploads>> = await listUploads(next);
+          const page: ListMultipartUploadsCommandOutput = await client.send(new ListMultipartUploadsCommand({ Bucket, ...next }));
           for (const { Key, UploadId, Initiated } of page.Uploads ?? []) {
             if (Initiated && Initiated < olderThan) found.push({ key: Key!, uploadId: UploadId!, begunAt: Initiated });
           }
@@ -103,10 +107,6 @@ export function multipartOf({ client, publicClient, Bucket, call, head }: Around
       });
     },
   };
-
-  function listUploads(markers: { KeyMarker?: string; UploadIdMarker?: string }) {
-    return client.send(new ListMultipartUploadsCommand({ Bucket, ...markers }));
-  }
 }
 
 const isMissing = (error: unknown) => error instanceof StoreError && error.reason === "missing";
