@@ -46,6 +46,9 @@ export function plannedFaults() {
   };
 }
 
+/** So many pieces a second make a line look slow all the time, not only at its end. */
+const PIECES_PER_SECOND = 20;
+
 /** The same bytes, cut off or slowed down. */
 export async function* suffer(bytes: AsyncIterable<Uint8Array>, { cutAfter = Infinity, perSecond = Infinity }: { cutAfter?: number | undefined; perSecond?: number | undefined }): AsyncGenerator<Uint8Array> {
   let seen = 0;
@@ -55,8 +58,16 @@ export async function* suffer(bytes: AsyncIterable<Uint8Array>, { cutAfter = Inf
       throw new Cut();
     }
     seen += chunk.byteLength;
-    yield chunk;
-    if (perSecond < Infinity) await sleep((chunk.byteLength / perSecond) * 1000);
+    if (perSecond === Infinity) {
+      yield chunk;
+      continue;
+    }
+    const pieceBytes = Math.max(1, Math.floor(perSecond / PIECES_PER_SECOND));
+    for (let from = 0; from < chunk.byteLength; from += pieceBytes) {
+      const piece = chunk.subarray(from, from + pieceBytes);
+      await sleep((piece.byteLength / perSecond) * 1000);
+      yield piece;
+    }
   }
   // An end that comes before the cut is one as well: the fault was asked for.
   if (cutAfter < Infinity) throw new Cut();
