@@ -13,6 +13,8 @@ const KINDS: Partial<Record<string, FaceRecord["kind"]>> = {
 const ARC_STEP = Math.PI / 8;
 const CURVE_POINTS = 65;
 const NONE: Vec3 = [0, 0, 0];
+/** A cylinder thinner than this has no inside and no outside. */
+const THINNEST_MM = 1e-7;
 
 export type Surface = Pick<FaceRecord, "kind" | "origin" | "direction" | "radius_mm" | "concave">;
 
@@ -64,6 +66,7 @@ export function surfaceOf(kernel: Kernel, face: TopoDS_Face): Surface {
       return found(at(u, v), outwardNormal(kernel, face, u, v), 0, false);
     case "cylinder": {
       const origin = around(v);
+      if (length(minus(at(0, v), origin)) < THINNEST_MM) return { ...found(origin, NONE, 0, false), kind: "other" };
       const direction = unit(minus(around(v + 1), origin));
       return found(origin, direction, length(minus(at(0, v), origin)), turnsIn((point) => onAxis(origin, direction, point), v));
     }

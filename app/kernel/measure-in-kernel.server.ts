@@ -3,7 +3,7 @@ import { findHoles } from "#app/geometry/holes.ts";
 import { findCircles } from "#app/geometry/patterns.ts";
 import { faceRecords } from "./face-records.server.ts";
 import { readStep, type ReadStep } from "./read-step.server.ts";
-import type { Kernel } from "./open-kernel.server.ts";
+import { partsOf, type Kernel } from "./open-kernel.server.ts";
 import type { StepMeasures } from "./kernel-protocol.ts";
 import { firstFault, measureSolids } from "./solid-measures.server.ts";
 
@@ -25,17 +25,26 @@ export function measureInKernel(kernel: Kernel, path: string, onProgress: (share
   const fault = firstFault(kernel, solids);
   if (fault !== null) warnings.push(fault);
   onProgress(0.8, "finding holes");
-  const faces = faceRecords(kernel, solids);
-  const holes = findHoles(faces);
-  return {
-    ...common,
-    ...measures,
-    solid: { solids: solids.length, faces: faces.length, valid: fault === null },
-    holes,
-    patterns: findCircles(holes, faces.filter(({ kind }) => kind === "cylinder")),
-    smallestInsideRadius_mm: smallestInsideRadius(faces),
-    thinnestWall_mm: null,
-  };
+  const features = findFeatures(kernel, read);
+  if (features === null) warnings.push("Holes could not be recognised in this solid; take them from the drawing.");
+  return { ...common, ...nothing, ...measures, ...features, solid: { solids: solids.length, faces: countFaces(kernel, solids), valid: fault === null } };
+}
+
+/** Null where the faces are too damaged to make sense of: the measures, already taken, stand all the same. */
+function findFeatures(kernel: Kernel, { solids }: ReadStep): Pick<StepMeasures, "holes" | "patterns" | "smallestInsideRadius_mm"> | null {
+  try {
+    const faces = faceRecords(kernel, solids);
+    const holes = findHoles(faces);
+    return { holes, patterns: findCircles(holes, faces.filter(({ kind }) => kind === "cylinder")), smallestInsideRadius_mm: smallestInsideRadius(faces) };
+  } catch (error) {
+    // The kernel throws its own kinds, none of them an Error; a bug of ours must not hide among them.
+    if (error instanceof TypeError || error instanceof ReferenceError) throw error;
+    return null;
+  }
+}
+
+function countFaces(kernel: Kernel, solids: ReadStep["solids"]): number {
+  return solids.reduce((sum, solid) => sum + partsOf(kernel, solid, kernel.TopAbs_ShapeEnum.TopAbs_FACE).length, 0);
 }
 
 /** Of the hollow cylinders, fillets and balls: what limits the cutter. */

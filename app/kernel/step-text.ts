@@ -106,7 +106,7 @@ function eachStatement(text: string, onStatement: (bare: string, whole: string) 
 
 /** The name of a PRODUCT: its second text, or its first (the identifier) where that is blank. */
 function productName(statement: string): string {
-  const texts = [...statement.replace(/\/\*[\s\S]*?\*\//g, " ").matchAll(/'((?:[^']|'')*)'/g)].map(([, text]) => decodeText(text!).trim());
+  const texts = [...statement.matchAll(/\/\*[\s\S]*?\*\/|'((?:[^']|'')*)'/g)].flatMap(([, text]) => (text === undefined ? [] : decodeText(text).trim()));
   return texts[1] || texts[0] || "";
 }
 
