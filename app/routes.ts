@@ -6,6 +6,7 @@ export default [
   route("sign-in/link/:token", "routes/sign-in-link.tsx"),
   route("prove", "routes/prove.tsx"),
   route("prove/link/:token", "routes/prove-link.tsx"),
+  route("g/:token", "routes/guest-link.tsx"),
   route("sign-out", "routes/sign-out.tsx"),
   route("preferences", "routes/preferences.tsx"),
   route("health", "routes/health.ts"),
@@ -18,6 +19,8 @@ export default [
     route("jobs/new", "routes/job-edit.tsx", { id: "job-new" }),
     route("jobs/:jobId", "routes/job.tsx"),
     route("jobs/:jobId/edit", "routes/job-edit.tsx"),
+    route("jobs/:jobId/access", "routes/job-access.tsx"),
+    route("jobs/:jobId/parts/new", "routes/part-new.tsx"),
 
     // What backs a revision
     route("revisions/:revisionId/instructions", "routes/instructions.tsx"),
