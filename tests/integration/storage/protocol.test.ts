@@ -1,7 +1,7 @@
 import { createHash, createHmac, randomBytes } from "node:crypto";
 import { Readable } from "node:stream";
 import {
-  ChecksumAlgorithm, CompleteMultipartUploadCommand, CopyObjectCommand, CreateMultipartUploadCommand, DeleteObjectsCommand, GetBucketLocationCommand, GetObjectCommand, HeadObjectCommand,
+  type ChecksumAlgorithm, CompleteMultipartUploadCommand, CopyObjectCommand, CreateMultipartUploadCommand, DeleteObjectsCommand, GetBucketLocationCommand, GetObjectCommand, HeadObjectCommand,
   ListObjectsCommand, ListObjectsV2Command, ListObjectVersionsCommand, ListPartsCommand, PutObjectCommand, UploadPartCommand, UploadPartCopyCommand, type PutObjectCommandInput,
 } from "@aws-sdk/client-s3";
 import { getSignedUrl } from "@aws-sdk/s3-request-presigner";
