@@ -99,7 +99,7 @@ export async function copyObject(asked: Asked, house: House): Promise<Answer> {
   refuseKey(asked.key);
   const source = copySource(asked, house);
   const replace = amz(asked, "x-amz-metadata-directive")?.toUpperCase() === "REPLACE";
-  if (!replace && findObject(house, asked.bucket, source.key) === source && source.key === asked.key) {
+  if (!replace && catalog.bucketNamed(asked.bucket).objects.get(asked.key) === source) {
     throw new S3Fault("InvalidRequest", "This copy request is illegal because it is trying to copy an object to itself without changing the object's metadata.");
   }
   const object: StoredObject = { ...source, key: asked.key, modified: house.now(), headers: replace ? keptHeaders(asked) : source.headers };

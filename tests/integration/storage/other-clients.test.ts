@@ -95,6 +95,19 @@ describe("rclone", () => {
     expect((await at.store.list(`${at.prefix}rclone-sync`).next()).done).toBe(true);
   });
 
+  test("copies from bucket to bucket without fetching, and takes a bucket away", async () => {
+    const source = `shop:${at.settings.bucket}/${at.prefix}between`;
+    const other = `shop:${at.settings.bucket}-${randomBytes(4).toString("hex")}`;
+    const { folder, files } = await makeTree("rclone-between");
+    await rclone("copy", folder, source);
+    await rclone("mkdir", other);
+    const { stderr } = await run("rclone", ["copy", source, other, "-v"], { env: environment });
+    expect(stderr.match(/Copied \(server-side copy\)/g)).toHaveLength(files.size);
+    await rclone("check", folder, other, "--download");
+    await rclone("purge", other);
+    expect(await rclone("lsd", "shop:")).not.toContain(other.slice("shop:".length));
+  });
+
   test("a stream of unknown length arrives", async () => {
     const remote = `shop:${at.settings.bucket}/${at.prefix}rclone-rcat`;
     await run("sh", ["-c", `head -c 7000000 /dev/zero | rclone rcat '${remote}'`], { env: environment });
