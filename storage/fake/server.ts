@@ -38,6 +38,7 @@ const FAULTS_PATH = "/_faults";
 const READ_ON_BYTES = 64 * 1024 * 1024;
 const PATIENCE_AT_STOP_MS = 10_000;
 const IDLE_MS = 65_000;
+const SILENCE_MS = 120_000;
 
 /**
  * An object store that speaks S3, on loopback and in one folder: for people who try the product
@@ -53,8 +54,9 @@ export async function startFakeStore(settings: FakeStoreSettings): Promise<FakeS
     void serveOne(house, faults, settings.faultsByRequest ?? false, request, response).catch(() => response.destroy());
   });
   server.keepAliveTimeout = IDLE_MS;
-  // A large file over a slow line is no attack here.
+  // A large file over a slow line is no attack here; a line on which nothing comes is dead.
   server.requestTimeout = 0;
+  server.timeout = SILENCE_MS;
   await new Promise<void>((resolve, reject) => {
     server.once("error", reject);
     server.listen(settings.port, "127.0.0.1", resolve);
