@@ -21,6 +21,7 @@ export interface SolidBuilder {
   extrude(outline: [x: number, y: number][], height: number, thickness: number): Solid;
   cut(from: Solid, ...tools: Solid[]): Solid;
   fuse(first: Solid, ...others: Solid[]): Solid;
+  translate(solid: Solid, by: Vec3): Solid;
   /** Breaks the edges that `which` picks by a point in their middle. */
   chamfer(solid: Solid, leg: number, which: (middle: Vec3) => boolean): Solid;
   fillet(solid: Solid, radius: number, which: (middle: Vec3) => boolean): Solid;
@@ -59,6 +60,12 @@ export async function openSolidBuilder(): Promise<SolidBuilder> {
       new kernel.BRepPrimAPI_MakePrism(flatFace(kernel, outline.map(([x, y]) => [x, y, height])), new kernel.gp_Vec(0, 0, thickness), false, true).Shape(),
     cut: (from, ...tools) => tools.reduce((rest, tool) => new kernel.BRepAlgoAPI_Cut(rest, tool, progress()).Shape(), from),
     fuse: (first, ...others) => others.reduce((sum, other) => unified(kernel, new kernel.BRepAlgoAPI_Fuse(sum, other, progress()).Shape()), first),
+    translate(solid, by) {
+      const move = new kernel.gp_Trsf();
+      move.SetTranslation(new kernel.gp_Vec(...by));
+      // Geometry of its own, so that a file of it holds coordinates and no placement.
+      return new kernel.BRepBuilderAPI_Transform(solid, move, true, false).Shape();
+    },
     chamfer(solid, leg, which) {
       const chamfers = new kernel.BRepFilletAPI_MakeChamfer(solid);
       for (const edge of edgesWhere(kernel, solid, which)) chamfers.Add(leg, edge);
