@@ -23,6 +23,8 @@ export default [
     route("jobs/:jobId/parts/new", "routes/part-new.tsx"),
 
     // What backs a revision
+    route("revisions/:revisionId/calculations/new", "routes/calculation-new.tsx"),
+    route("calculations/:calculationId", "routes/calculation.tsx"),
     route("revisions/:revisionId/instructions", "routes/instructions.tsx"),
     route("revisions/:revisionId/makeability", "routes/makeability.tsx"),
 

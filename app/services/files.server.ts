@@ -1,6 +1,7 @@
 import { findDerivedFile, findFile, type DerivedKind } from "#app/data/files.server.ts";
 import { can } from "#app/domain/permissions.ts";
 import { inShop } from "#app/data/scope.server.ts";
+import { isShownToCustomer, seesOnlyShared } from "#app/data/shared.server.ts";
 import type { Viewer } from "#app/domain/viewer.ts";
 import { store } from "./store.server.ts";
 
@@ -20,12 +21,17 @@ export async function originalAddress(viewer: Viewer, fileId: string): Promise<s
 
 const extensions: Record<DerivedKind, string> = { "view-mesh": "glb", "customer-mesh": "glb", thumbnail: "webp", screen: "webp" };
 
-/** A fresh address of what was derived from a file. A customer who asks for the view mesh gets the coarser one. */
+/**
+ * A fresh address of what was derived from a file. A customer gets the pictures and meshes of what
+ * the shop has shown, and the coarser mesh where the view mesh is asked for.
+ */
 export async function derivedAddress(viewer: Viewer, fileId: string, kind: DerivedKind): Promise<string | null> {
   const shown = kind === "view-mesh" && !can(viewer.roles, "model:download") ? "customer-mesh" : kind;
   const found = await inShop(viewer, async (tx) => {
     const file = await findFile(tx, fileId);
-    return file?.state === "stored" ? findDerivedFile(tx, fileId, shown) : undefined;
+    if (file?.state !== "stored") return undefined;
+    if (seesOnlyShared(viewer) && !(await isShownToCustomer(tx, fileId))) return undefined;
+    return findDerivedFile(tx, fileId, shown);
   });
   if (!found) return null;
   return store().presignGet(found.key, { seconds: addressLife, filename: `${kind}.${extensions[kind]}`, contentType: found.mediaType, inline: true });
