@@ -8,6 +8,8 @@ export const SAME_MM = 1e-4;
 const SAME_DIRECTION = 1e-6;
 /** Heights closer than this are one. */
 const LEVEL_MM = 1e-6;
+/** Lower rings than this are where two roundings overlap by a hair, not bores. */
+const LOWEST_MM = 1e-3;
 /** A ring counts as complete when less of it is missing than rounding explains, in radians. */
 const RING_GAP = 1e-3;
 
@@ -131,6 +133,7 @@ function completeStretches(faces: readonly FaceRecord[], group: number[], axis: 
     let mouthHigh = last;
     while (mouthHigh < slabs.length - 1 && slabs[mouthHigh + 1]!.covered > RING_GAP) mouthHigh++;
     const [from, to] = [slabs[first]!.from, slabs[last]!.to];
+    if (to - from < LOWEST_MM) continue;
     const sides = unrolled.flat();
     const radiusAt = radiusOf(faces[group[0]!]!, axis);
     stretches.push({

@@ -28,8 +28,8 @@ async function perform(task: KernelTask): Promise<void> {
     if (task.kind === "measure") return await say({ kind: "done", result: measureInKernel(kernel, task.path, progress), bytes: 0 });
     const { parts, ...result } = tessellateInKernel(kernel, task.path, task.chord_mm, progress);
     const bytes = parts.reduce((sum, part) => sum + part.length, 0);
-    await pipeline(Readable.from(parts), createWriteStream("", { fd: BINARY_PIPE }));
     await say({ kind: "done", result, bytes });
+    await pipeline(Readable.from(parts), createWriteStream("", { fd: BINARY_PIPE }));
   } catch (error) {
     // Anything else is a trap of the kernel: it ends the process, and the parent finds the words.
     if (!(error instanceof UnreadableModel)) process.exit(70);

@@ -1,5 +1,5 @@
 import { fork, type ChildProcess } from "node:child_process";
-import { readFile } from "node:fs/promises";
+import { readFile, stat } from "node:fs/promises";
 import { createRequire } from "node:module";
 import type { Readable } from "node:stream";
 import { fileURLToPath, pathToFileURL } from "node:url";
@@ -10,6 +10,12 @@ const MEMORY_LIMIT = 2 * 1024 ** 3;
 const TIME_LIMIT_MS = 120_000;
 /** Memory can grow by hundreds of megabytes a second; WebAssembly itself stops at four gigabytes. */
 const WATCH_EVERY_MS = 50;
+
+/**
+ * Up to here a file is read before an optimising compiler has paid for itself: without it a small
+ * part takes a third of the time, and a part of this size about as long.
+ */
+const UNOPTIMISED_BYTES = 2 * 1024 ** 2;
 
 export interface KernelRun {
   /** Share done from 0 to 1, and what is being done. */
@@ -35,10 +41,13 @@ export interface KernelAnswer<Result> {
  */
 export async function runKernel<Result>(task: KernelTask, { onProgress, signal, memoryLimit = MEMORY_LIMIT, timeLimit_ms = TIME_LIMIT_MS }: KernelRun = {}): Promise<KernelAnswer<Result>> {
   signal?.throwIfAborted();
-  const child = startProcess();
+  const { size } = await stat(task.path);
+  const child = startProcess(size <= UNOPTIMISED_BYTES ? ["--liftoff-only"] : []);
   const pieces: Uint8Array[] = [];
+  let received = 0;
   const binary = child.stdio[BINARY_PIPE] as Readable;
-  binary.on("data", (piece: Uint8Array) => pieces.push(piece));
+  // A pipe that breaks when its process dies: the process's end says enough.
+  binary.on("error", () => {});
 
   let ended = false;
   let timer: NodeJS.Timeout | undefined;
@@ -46,17 +55,31 @@ export async function runKernel<Result>(task: KernelTask, { onProgress, signal, 
   try {
     const done = await new Promise<Extract<KernelMessage, { kind: "done" }>>((settle, fail) => {
       let answer: Extract<KernelMessage, { kind: "done" }> | undefined;
-      child.on("message", (message: KernelMessage) => {
-        if (message.kind === "progress") onProgress?.(message.share, message.step);
-        else if (message.kind === "refused") fail(new UnreadableModel(message.reason));
-        else if (message.kind === "done") answer = message;
+      // Once answer and bytes are here nothing is waited for: a kernel takes a second to put itself away.
+      const settleWhenWhole = () => answer && received >= answer.bytes && settle(answer);
+      binary.on("data", (piece: Uint8Array) => {
+        pieces.push(piece);
+        received += piece.length;
+        settleWhenWhole();
       });
-      child.once("error", fail);
-      // "close" comes after the pipe is read to its end; "exit" may come before.
-      child.once("close", (code) => {
+      child.on("message", (message: KernelMessage) => {
+        if (message.kind === "progress") {
+          try {
+            onProgress?.(message.share, message.step);
+          } catch (error) {
+            fail(error);
+          }
+        } else if (message.kind === "refused") fail(new UnreadableModel(message.reason));
+        else if (message.kind === "done") {
+          answer = message;
+          settleWhenWhole();
+        }
+      });
+      child.on("error", fail);
+      // "close" comes after message channel and pipe are read to their end; "exit" may come before.
+      child.once("close", () => {
         ended = true;
-        if (code === 0 && answer) settle(answer);
-        else fail(new UnreadableModel("broke the geometry kernel while it was read; it is damaged or uses geometry that can't be read. Check and repair the part in the CAD program, and save it again as STEP"));
+        fail(new UnreadableModel("broke the geometry kernel while it was read; it is damaged or uses geometry that can't be read. Check and repair the part in the CAD program, and save it again as STEP"));
       });
       timer = setTimeout(() => fail(new UnreadableModel(`took longer than ${inWords(timeLimit_ms)} to read and was stopped; simplify the part, or split the assembly`)), timeLimit_ms);
       onAbort = () => fail(signal!.reason);
@@ -75,10 +98,10 @@ export async function runKernel<Result>(task: KernelTask, { onProgress, signal, 
   }
 }
 
-function startProcess(): ChildProcess {
+function startProcess(engineOptions: string[]): ChildProcess {
   const require = createRequire(import.meta.url);
   return fork(fileURLToPath(new URL("./kernel-process.server.ts", import.meta.url)), [], {
-    execArgv: ["--import", pathToFileURL(require.resolve("tsx")).href],
+    execArgv: [...engineOptions, "--import", pathToFileURL(require.resolve("tsx")).href],
     serialization: "advanced",
     stdio: ["ignore", "ignore", "ignore", "ipc", "pipe"],
     // It needs nothing of ours: no addresses, no secrets.
