@@ -141,11 +141,11 @@ export interface NewFitResult {
  */
 export async function addFitCheck(
   tx: Tx,
-  check: { shopId: string; jobId: string; revisionId: string; printId: string; matingPartId: string; cause: FitCause | null; remarks: string; draftKey: string; by: { personId: string | null; name: string }; results: readonly NewFitResult[] },
+  check: { shopId: string; jobId: string; revisionId: string; printId: string; matingPartId: string; cause: FitCause | null; remarks: string; draftKey: string; at: Date; by: { personId: string | null; name: string }; results: readonly NewFitResult[] },
 ): Promise<string | null> {
   const place = { shop_id: check.shopId, job_id: check.jobId, revision_id: check.revisionId };
   const [row] = await tx("fit_checks")
-    .insert({ ...place, print_id: check.printId, mating_part_id: check.matingPartId, cause: check.cause, remarks: check.remarks, draft_key: check.draftKey, by_person_id: check.by.personId, by_name: check.by.name })
+    .insert({ ...place, print_id: check.printId, mating_part_id: check.matingPartId, cause: check.cause, remarks: check.remarks, draft_key: check.draftKey, at: check.at, by_person_id: check.by.personId, by_name: check.by.name })
     .onConflict(["shop_id", "draft_key"])
     .ignore()
     .returning("id");

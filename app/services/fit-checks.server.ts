@@ -45,6 +45,7 @@ export async function recordFitCheck(viewer: Viewer, submission: FitSubmission):
       cause: failed.length > 0 ? submission.cause : null,
       remarks: submission.remarks,
       draftKey: submission.draftKey,
+      at: triedAt(submission.triedAt, new Date()),
       by: viewer,
       results: read.results,
     });
@@ -61,6 +62,15 @@ export async function recordFitCheck(viewer: Viewer, submission: FitSubmission):
 
 function already(fitCheckId: string, printId: string, submission: FitSubmission): RecordFitCheck {
   return printId === submission.printId ? { ok: true, fitCheckId, already: true } : refuse(409, "This draft was stored for another print. Begin a new fit check.");
+}
+
+/** A draft may wait for its connection this long; an older time is a wrong clock. */
+const longestWait = 31 * 24 * 3600 * 1000;
+
+/** When it was tried, by the phone's clock where that can be, which decides what was found last. */
+function triedAt(said: string, now: Date): Date {
+  const at = new Date(said);
+  return at <= now && now.getTime() - at.getTime() < longestWait ? at : now;
 }
 
 async function instrumentsOf(tx: Tx, { results }: FitSubmission): Promise<PickedInstrument[]> {
