@@ -26,6 +26,7 @@ export default [
     route("revisions/:revisionId/calculations/new", "routes/calculation-new.tsx"),
     route("calculations/:calculationId", "routes/calculation.tsx"),
     route("revisions/:revisionId/instructions", "routes/instructions.tsx"),
+    route("revisions/:revisionId/approval", "routes/approval.tsx"),
     route("revisions/:revisionId/makeability", "routes/makeability.tsx"),
 
     // The gate and what comes of it
@@ -33,6 +34,9 @@ export default [
     route("revisions/:revisionId/cautions", "routes/cautions.tsx"),
     route("packets/:decisionId", "routes/packet.tsx"),
     route("packets/:decisionId/download", "routes/packet-download.ts"),
+
+    // The customer's side
+    route("your-job/:jobId", "routes/your-job.tsx"),
 
     // Customers
     route("customers", "routes/customers.tsx"),
