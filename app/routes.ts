@@ -22,6 +22,11 @@ export default [
     route("jobs/:jobId/access", "routes/job-access.tsx"),
     route("jobs/:jobId/parts/new", "routes/part-new.tsx"),
 
+    // Prints, fit checks, callouts
+    route("revisions/:revisionId/prints/new", "routes/print-new.tsx"),
+    route("prints/:printId", "routes/print.tsx"),
+    route("fit-checks/:fitCheckId", "routes/fit-check.tsx"),
+
     // What backs a revision
     route("revisions/:revisionId/calculations/new", "routes/calculation-new.tsx"),
     route("calculations/:calculationId", "routes/calculation.tsx"),
