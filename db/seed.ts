@@ -1,6 +1,6 @@
 import { closeDb } from "#db/connection.server.ts";
-import { seedPeople } from "./seeds/people.ts";
+import { seedDemo } from "./seeds/demo.ts";
 
 // The demo shop, through the same services as the app. Running it again changes nothing.
-await seedPeople();
+await seedDemo();
 await closeDb();

@@ -33,11 +33,15 @@ export async function seedPeople(): Promise<DemoPeople> {
     await addMembership(tx, { shopId, personId: ids.get("owner")!, roles: ["owner"] });
     for (const role of ["designer", "machinist", "customer"] as const) await addMembership(tx, { shopId, personId: ids.get(role)!, roles: [role] });
   });
-  const viewerOf = async (role: Role): Promise<Viewer> => {
-    const person = signIns.find((one) => one.role === role)!;
-    const personId = ids.get(role)!;
-    const jobs = isKeptToJobs([role]) ? await outsideShops((tx) => listJobsOf(tx, shopId, personId, [role])) : "*";
-    return { personId, guestLinkId: null, name: person.name, email: person.email, shopId, shopName: demoShopName, roles: [role], jobs, sessionId: null, provedAt: null, provedBy: null };
-  };
-  return { owner: await viewerOf("owner"), designer: await viewerOf("designer"), machinist: await viewerOf("machinist"), customer: await viewerOf("customer") };
+  return { owner: await viewerOf("owner", shopId), designer: await viewerOf("designer", shopId), machinist: await viewerOf("machinist", shopId), customer: await viewerOf("customer", shopId) };
+}
+
+/** This person of the demo as they are when signed in now. */
+export async function viewerOf(role: Role, shopId: string): Promise<Viewer> {
+  const listed = signIns.find((one) => one.role === role)!;
+  return outsideShops(async (tx) => {
+    const person = (await findPersonByEmail(tx, listed.email))!;
+    const jobs = isKeptToJobs([role]) ? await listJobsOf(tx, shopId, person.id, [role]) : "*";
+    return { personId: person.id, guestLinkId: null, name: person.name, email: person.email, shopId, shopName: demoShopName, roles: [role], jobs, sessionId: null, provedAt: null, provedBy: null };
+  });
 }
