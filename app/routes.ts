@@ -27,6 +27,11 @@ export default [
     route("prints/:printId", "routes/print.tsx"),
     route("fit-checks/:fitCheckId", "routes/fit-check.tsx"),
 
+    // A revision: its sheet, its files
+    route("parts/:partId/revisions/new", "routes/revision-new.tsx"),
+    route("revisions/:revisionId", "routes/revision.tsx"),
+    route("revisions/:revisionId/files", "routes/revision-files.tsx"),
+
     // What backs a revision
     route("revisions/:revisionId/calculations/new", "routes/calculation-new.tsx"),
     route("calculations/:calculationId", "routes/calculation.tsx"),

@@ -143,6 +143,10 @@ export async function setFileKind(tx: Tx, id: string, kind: FileKind, mediaType:
   await tx("files").where({ id }).update({ kind, media_type: mediaType });
 }
 
+export async function setFileUnit(tx: Tx, id: string, unit: "mm" | "in"): Promise<void> {
+  await tx("files").where({ id }).update({ unit });
+}
+
 export async function listStaleUploads(tx: Tx, before: Date): Promise<StoredFile[]> {
   const rows = (await tx("files").where({ state: "uploading" }).where("created_at", "<", before)) as FileRow[];
   return rows.map(toFile);

@@ -98,3 +98,7 @@ export async function setRevisionAside(tx: Tx, id: string, reason: string | null
 export async function shareRevision(tx: Tx, id: string): Promise<void> {
   await tx("revisions").where({ id }).whereNull("shared_at").update({ shared_at: tx.fn.now() });
 }
+
+export async function nameBranch(tx: Tx, id: string, name: string | null): Promise<void> {
+  await tx("revisions").where({ id }).update({ branch_name: name, row_version: tx.raw("row_version + 1") });
+}

@@ -1,7 +1,7 @@
 import { logOf, writeLog } from "#app/data/logbook.server.ts";
 import { findJob } from "#app/data/jobs.server.ts";
 import { addPart, changePart, findPart, setPartAside, type Part, type PartValues } from "#app/data/parts.server.ts";
-import { addRevision, findRevision, setRevisionAside } from "#app/data/revisions.server.ts";
+import { addRevision, findRevision, nameBranch, setRevisionAside } from "#app/data/revisions.server.ts";
 import { orNotFound, type Tx } from "#app/data/scope.server.ts";
 import type { Viewer } from "#app/domain/viewer.ts";
 import { findKit } from "#app/engineering/kits.ts";
@@ -65,5 +65,14 @@ export async function putRevisionAside(tx: Tx, viewer: Viewer, id: string, reaso
   if (revision.sealedAt) return { ok: false, reason: "sealed" };
   await setRevisionAside(tx, id, reason);
   await writeLog(tx, logOf(viewer, reason === null ? "took a revision up again" : "set a revision aside", { type: "revision", id, jobId: revision.jobId }, reason === null ? {} : { reason }));
+  return { ok: true };
+}
+
+/** Names the branch that a revision begins, or (null) takes the name off. */
+export async function nameRevisionBranch(tx: Tx, viewer: Viewer, id: string, name: string | null): Promise<{ ok: true } | { ok: false; reason: "sealed" }> {
+  const revision = orNotFound(await findRevision(tx, id));
+  if (revision.sealedAt) return { ok: false, reason: "sealed" };
+  await nameBranch(tx, id, name);
+  await writeLog(tx, logOf(viewer, "named a branch", { type: "revision", id, jobId: revision.jobId }, { ordinal: revision.ordinal, name }));
   return { ok: true };
 }
