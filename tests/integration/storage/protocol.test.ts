@@ -2,7 +2,7 @@ import { createHash, createHmac, randomBytes } from "node:crypto";
 import { Readable } from "node:stream";
 import {
   type ChecksumAlgorithm, CompleteMultipartUploadCommand, CopyObjectCommand, CreateMultipartUploadCommand, DeleteObjectsCommand, GetBucketLocationCommand, GetObjectCommand, HeadObjectCommand,
-  ListObjectsCommand, ListObjectsV2Command, ListObjectVersionsCommand, ListPartsCommand, PutObjectCommand, UploadPartCommand, UploadPartCopyCommand, type PutObjectCommandInput,
+  ListObjectsCommand, ListObjectsV2Command, ListObjectVersionsCommand, ListPartsCommand, PutObjectCommand, UploadPartCommand, UploadPartCopyCommand, S3Client, type PutObjectCommandInput, type S3ClientConfig,
 } from "@aws-sdk/client-s3";
 import { getSignedUrl } from "@aws-sdk/s3-request-presigner";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
@@ -23,6 +23,11 @@ const key = (name: string) => at.prefix + name;
 const put = (name: string, more: Partial<PutObjectCommandInput> = {}) => at.plain.send(new PutObjectCommand({ Bucket, Key: key(name), Body: name, ...more }));
 const text = async (name: string) => (await at.plain.send(new GetObjectCommand({ Bucket, Key: key(name) }))).Body!.transformToString();
 const code = (work: Promise<unknown>) => work.then(() => "none", (error: Error) => error.name);
+/** A client to tamper with, which asks once. */
+const another = (more: S3ClientConfig = {}) => {
+  const { endpoint, region, accessKeyId, secretAccessKey } = at.settings;
+  return new S3Client({ endpoint, region, forcePathStyle: true, maxAttempts: 1, credentials: { accessKeyId, secretAccessKey }, ...more });
+};
 const sha256 = (bytes: string | Buffer) => createHash("sha256").update(bytes).digest("base64");
 
 describe("the SDK with its defaults", () => {
@@ -52,6 +57,33 @@ describe("the SDK with its defaults", () => {
     expect(await code(put("wrong", { ContentMD5: createHash("md5").update("else").digest("base64") }))).toBe("BadDigest");
     expect(await code(put("wrong", { ContentMD5: "short" }))).toBe("InvalidDigest");
     expect(await code(at.plain.send(new HeadObjectCommand({ Bucket, Key: key("wrong") })))).toBe("NotFound");
+  });
+
+  test("bytes changed after they were signed are refused and not kept", async () => {
+    const bare = another({ requestChecksumCalculation: "WHEN_REQUIRED" });
+    bare.middlewareStack.add((next) => (args) => {
+      (args.request as { body: unknown }).body = "changed!";
+      return next(args);
+    }, { step: "deserialize" });
+    // Only the signed hash of the body speaks against it: no checksum was sent.
+    expect(await code(bare.send(new PutObjectCommand({ Bucket, Key: key("changed"), Body: "as sent." })))).toBe("XAmzContentSHA256Mismatch");
+    expect(await code(at.plain.send(new HeadObjectCommand({ Bucket, Key: key("changed") })))).toBe("NotFound");
+    bare.destroy();
+  });
+
+  test("a framed stream that holds less or more than it announced is refused and not kept", async () => {
+    for (const [announced, name] of [[10, "IncompleteBody"], [8, "InvalidRequest"]] as const) {
+      const framing = another();
+      framing.middlewareStack.add((next) => (args) => {
+        const { headers } = args.request as { headers: Record<string, string> };
+        headers["x-amz-decoded-content-length"] = String(announced);
+        return next(args);
+      }, { step: "build", priority: "low" });
+      const work = framing.send(new PutObjectCommand({ Bucket, Key: key("misframed"), Body: Readable.from([Buffer.from("123456789")]), ContentLength: 9 }));
+      expect(await code(work)).toBe(name);
+      expect(await code(at.plain.send(new HeadObjectCommand({ Bucket, Key: key("misframed") })))).toBe("NotFound");
+      framing.destroy();
+    }
   });
 
   test("parts carry checksums, and the whole has one", async () => {
