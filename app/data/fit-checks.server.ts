@@ -1,9 +1,8 @@
+import type { FitCause } from "#app/domain/fit-causes.ts";
 import { dateText, toNumber, type NumericText } from "./rows.server.ts";
 import type { Tx } from "./scope.server.ts";
 
-/** Why a fit check failed. */
-export const fitCauses = ["design", "print", "misread"] as const;
-export type FitCause = (typeof fitCauses)[number];
+export type { FitCause };
 
 export interface FitCheck {
   id: string;
