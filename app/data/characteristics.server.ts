@@ -125,3 +125,8 @@ export async function changeCharacteristic(tx: Tx, id: string, rowVersion: numbe
 export async function setCharacteristicAside(tx: Tx, id: string, aside: boolean): Promise<void> {
   await tx("characteristics").where({ id }).update({ set_aside_at: aside ? tx.fn.now() : null, row_version: tx.raw("row_version + 1") });
 }
+
+/** Does a fit check hold a result of it? */
+export async function isTried(tx: Tx, id: string): Promise<boolean> {
+  return (await tx("fit_results").where({ characteristic_id: id }).first("id")) !== undefined;
+}

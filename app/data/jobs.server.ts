@@ -99,3 +99,13 @@ export async function changeJob(tx: Tx, id: string, rowVersion: number, values: 
 export async function setJobAside(tx: Tx, id: string, aside: boolean): Promise<void> {
   await tx("jobs").where({ id }).update({ set_aside_at: aside ? tx.fn.now() : null, row_version: tx.raw("row_version + 1") });
 }
+
+/** What was agreed of a deposit; the two exclude each other. */
+export async function changeDeposit(tx: Tx, id: string, rowVersion: number, agreed: Pick<Job, "depositAgreedMinor" | "depositNoneReason">): Promise<boolean> {
+  return updateIfUnchanged(tx, "jobs", id, rowVersion, { deposit_agreed_minor: agreed.depositAgreedMinor, deposit_none_reason: agreed.depositNoneReason });
+}
+
+/** Locks the job until the transaction ends; false when it is not here. */
+export async function lockJob(tx: Tx, id: string): Promise<boolean> {
+  return (await tx("jobs").where({ id }).forUpdate().first("id")) !== undefined;
+}

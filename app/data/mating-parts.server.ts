@@ -148,3 +148,12 @@ export async function addMeasurement(
 export async function setMeasurementAside(tx: Tx, id: string, aside: boolean): Promise<boolean> {
   return (await tx("measurements").where({ id }).update({ set_aside_at: aside ? tx.fn.now() : null, row_version: tx.raw("row_version + 1") })) === 1;
 }
+
+export async function findMeasurement(tx: Tx, id: string): Promise<{ id: string; jobId: string; matingPartId: string; name: string; valueMm: number } | undefined> {
+  const row = (await tx("measurements").where({ id }).first("id", "job_id", "mating_part_id", "name", "value_mm")) as { id: string; job_id: string; mating_part_id: string; name: string; value_mm: NumericText } | undefined;
+  return row && { id: row.id, jobId: row.job_id, matingPartId: row.mating_part_id, name: row.name, valueMm: Number(row.value_mm) };
+}
+
+export async function setMatingPartAside(tx: Tx, id: string, aside: boolean): Promise<void> {
+  await tx("mating_parts").where({ id }).update({ set_aside_at: aside ? tx.fn.now() : null, row_version: tx.raw("row_version + 1") });
+}

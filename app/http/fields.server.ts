@@ -34,13 +34,16 @@ function readNumber(text: string): number | null {
 }
 
 interface Range {
+  /** The value itself is refused too. */
+  above?: number;
   min?: number;
   max?: number;
   whole?: boolean;
 }
 
-function inRange(value: number, { min, max, whole }: Range): string | null {
+function inRange(value: number, { above, min, max, whole }: Range): string | null {
   if (whole && !Number.isInteger(value)) return "Give a whole number";
+  if (above !== undefined && value <= above) return `Give more than ${above}`;
   if (min !== undefined && value < min) return `Give at least ${min}`;
   if (max !== undefined && value > max) return `Give at most ${max}`;
   return null;

@@ -1,37 +1,52 @@
+import { addInstrument, type InstrumentValues } from "#app/data/instruments.server.ts";
+import { addMaterial } from "#app/data/materials.server.ts";
+import { addPreset, addPrinter, type PresetValues } from "#app/data/printers.server.ts";
+import { addQuestion } from "#app/data/questions.server.ts";
 import type { Tx } from "#app/data/scope.server.ts";
+import { isTableEmpty } from "#app/data/equipment.server.ts";
 import { materials } from "#app/engineering/tables/materials.ts";
 
-// Where a new shop begins: what most benches have, to be changed or set aside. Resolution and
-// uncertainty of hand tools as in their makers' data sheets usually stand: common practice, no source.
-const instruments = [
-  { name: "Caliper 0-150", kind: "caliper", resolution_mm: 0.01, uncertainty_mm: 0.03 },
-  { name: "Micrometer 0-25", kind: "micrometer", resolution_mm: 0.001, uncertainty_mm: 0.004 },
-  { name: "Bore gauge 50-75", kind: "bore gauge", resolution_mm: 0.001, uncertainty_mm: 0.006 },
-  { name: "Depth gauge 0-150", kind: "depth gauge", resolution_mm: 0.01, uncertainty_mm: 0.03 },
+const unverified = { trust: "unverified", calibratedUntil: null, checkedOn: null, checkedWith: "" } as const;
+
+/**
+ * What a small shop usually has at the bench, with an uncertainty on the careful side: common
+ * practice, no source. Nobody has checked them yet, and so they are shown.
+ */
+const instruments: readonly InstrumentValues[] = [
+  { name: "Caliper 150", kind: "caliper", resolutionMm: 0.01, uncertaintyMm: 0.03, ...unverified },
+  { name: "Micrometer 0-25", kind: "micrometer", resolutionMm: 0.001, uncertaintyMm: 0.004, ...unverified },
+  { name: "Micrometer 25-50", kind: "micrometer", resolutionMm: 0.001, uncertaintyMm: 0.005, ...unverified },
+  { name: "Bore gauge 35-60", kind: "bore gauge", resolutionMm: 0.01, uncertaintyMm: 0.01, ...unverified },
+  { name: "Depth gauge 200", kind: "depth gauge", resolutionMm: 0.01, uncertaintyMm: 0.03, ...unverified },
+  { name: "Gauge pins", kind: "gauge pins", resolutionMm: 0.01, uncertaintyMm: 0.005, ...unverified },
 ];
 
-const presets = [
-  { name: "Fit print", material: "PETG", layer_mm: 0.2, walls: 4, infill_pct: 25, note: "For trying on: quick, true enough for clearance holes and seats." },
-  { name: "Fine fit print", material: "PETG", layer_mm: 0.12, walls: 5, infill_pct: 40, note: "For bores, pilots and sealing lands." },
+/** Settings to begin with: common practice, no source; the shop's own prints correct the scale. */
+const asModelled = { scaleX: 1, scaleY: 1, scaleZ: 1 };
+const presets: readonly Omit<PresetValues, "printerId">[] = [
+  { name: "Fit check", material: "PETG", layerMm: 0.16, walls: 4, infillPct: 30, ...asModelled, note: "Slow outer wall; let it cool on the bed." },
+  { name: "Quick shape", material: "PLA", layerMm: 0.28, walls: 3, infillPct: 15, ...asModelled, note: "For room and clocking, not for bores." },
 ];
 
 const questions = [
-  "Can the smallest inside corner be cut with a cutter you have?",
-  "Can every hole be reached and tapped to its full depth?",
-  "Can it be held for each set-up without marking a sealing face?",
-  "Can the general tolerance and the critical surfaces be held?",
+  "Can the smallest inside corner be cut?",
+  "Can every hole and thread be reached with your tools?",
+  "Can the stated tolerances be held on your machine?",
+  "Can it be held for every side that is cut, and may the clamping leave marks?",
+  "Can you get the stock in this grade and size?",
 ];
 
-/** Gives a new shop its instruments, a printer with presets, materials and makeability questions, once. */
+/** Gives a new shop its instruments, printer, presets, materials and questions. What a shop has one of already is left as it is. */
 export async function givePresets(tx: Tx, shopId: string): Promise<void> {
-  if (await tx("instruments").first("id")) return;
-  await tx("instruments").insert(instruments.map((one) => ({ shop_id: shopId, trust: "unverified", ...one })));
-  const [printer] = await tx("printers").insert({ shop_id: shopId, name: "Bench printer", process: "fused filament", bed_mm: "250 × 210 × 210" }).returning("id");
-  await tx("print_presets").insert(presets.map((one) => ({ shop_id: shopId, printer_id: printer.id, ...one })));
-  await tx("materials").insert(
-    materials
-      .filter(({ code }) => !/^(PLA|PETG|ABS|ASA|PA|resin)/.test(code))
-      .map(({ code, name, density_kg_m3, yield_MPa, tensile_MPa, shear_MPa, typical, source }) => ({ shop_id: shopId, code, name, density_kg_m3, yield_mpa: yield_MPa, tensile_mpa: tensile_MPa, shear_mpa: shear_MPa, typical, source })),
-  );
-  await tx("makeability_questions").insert(questions.map((question, i) => ({ shop_id: shopId, question, sort: i + 1 })));
+  if (await isTableEmpty(tx, "instruments")) for (const instrument of instruments) await addInstrument(tx, shopId, instrument);
+  if (await isTableEmpty(tx, "printers")) {
+    const printerId = await addPrinter(tx, shopId, { name: "Bench printer", process: "filament", bedMm: "220 × 220 × 250" });
+    for (const preset of presets) await addPreset(tx, shopId, { ...preset, printerId });
+  }
+  if (await isTableEmpty(tx, "materials")) {
+    for (const { code, name, density_kg_m3, yield_MPa, tensile_MPa, shear_MPa, typical, source } of materials) {
+      await addMaterial(tx, shopId, { code, name, densityKgM3: density_kg_m3, yieldMPa: yield_MPa, tensileMPa: tensile_MPa, shearMPa: shear_MPa, typical, source });
+    }
+  }
+  if (await isTableEmpty(tx, "makeability_questions")) for (const question of questions) await addQuestion(tx, shopId, question);
 }

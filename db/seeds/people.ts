@@ -5,6 +5,7 @@ import { findMemberships, listJobsOf } from "#app/data/sessions.server.ts";
 import { isKeptToJobs, type Role } from "#app/domain/permissions.ts";
 import { housekeeper, type Viewer } from "#app/domain/viewer.ts";
 import { hashPassword } from "#app/services/secrets.server.ts";
+import { givePresets } from "#app/services/shop-presets.server.ts";
 import signIns from "./demo-sign-ins.json" with { type: "json" };
 
 export const demoShopName = "Keld Motor Works";
@@ -30,6 +31,7 @@ export async function seedPeople(): Promise<DemoPeople> {
     return rows[0]!.id;
   });
   await inShop(housekeeper(shopId), async (tx) => {
+    await givePresets(tx, shopId);
     await addMembership(tx, { shopId, personId: ids.get("owner")!, roles: ["owner"] });
     for (const role of ["designer", "machinist", "customer"] as const) await addMembership(tx, { shopId, personId: ids.get(role)!, roles: [role] });
   });
