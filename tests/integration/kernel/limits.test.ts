@@ -63,7 +63,7 @@ describe("limits", () => {
   });
 
   test("a file that breaks the kernel breaks only its own: the next is measured", async () => {
-    const [broken, sound] = await Promise.allSettled([measure("bad/step-deep-parentheses.step"), measure("step/cube_hole.step")]);
+    const [broken, sound] = await Promise.allSettled([measure("bad/step-deep-parentheses.step", {}), measure("step/cube_hole.step", {})]);
     expect(broken).toMatchObject({ status: "rejected", reason: { name: "UnreadableModel", message: expect.stringContaining("broke the geometry kernel") } });
     expect(sound).toMatchObject({ status: "fulfilled", value: { solid: { solids: 1 } } });
   });
