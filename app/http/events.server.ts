@@ -47,14 +47,21 @@ const pulse = 25_000;
 export function eventStream(viewer: Viewer, signal: AbortSignal): Response {
   const encoder = new TextEncoder();
   const ended = AbortSignal.any([signal, stopping.signal, AbortSignal.timeout(600_000)]);
+  let end = () => {};
   const body = new ReadableStream<Uint8Array>({
+    // The page went away: nothing may be sent into what is closed.
+    cancel: () => end(),
     async start(controller) {
-      const send = (text: string) => controller.enqueue(encoder.encode(text));
+      let open = true;
+      const send = (text: string) => {
+        if (open) controller.enqueue(encoder.encode(text));
+      };
       const listener: Listener = (event) => {
         if (mayHear(viewer, event)) send(`data: ${JSON.stringify(event)}\n\n`);
       };
       const timer = setInterval(() => send(": still here\n\n"), pulse);
-      const end = () => {
+      end = () => {
+        open = false;
         clearInterval(timer);
         listeners.delete(listener);
         try {
@@ -63,7 +70,7 @@ export function eventStream(viewer: Viewer, signal: AbortSignal): Response {
           if (!(closed instanceof TypeError)) throw closed; // the browser closed it first
         }
       };
-      ended.addEventListener("abort", end, { once: true });
+      ended.addEventListener("abort", () => end(), { once: true });
       listeners.add(listener);
       connection ??= listen();
       await connection.catch((fault: unknown) => {
