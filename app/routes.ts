@@ -54,6 +54,9 @@ export default [
     route("customers/:customerId", "routes/customer.tsx"),
   ]),
 
+  // The bench has the whole screen of the phone to itself
+  route("prints/:printId/fit-checks/new", "routes/fit-check-new.tsx"),
+
   // Stored files: permission is asked here, the bytes come from the store
   route("files/:fileId", "routes/file.ts"),
   route("files/:fileId/:kind", "routes/file-derived.ts"),
@@ -64,6 +67,7 @@ export default [
 
   ...prefix("api", [
     route("events", "routes/api-events.ts"),
+    route("fit-checks", "routes/api-fit-checks.ts"),
     route("uploads", "routes/api-uploads.ts"),
     route("uploads/:fileId", "routes/api-upload.ts"),
   ]),

@@ -1,5 +1,6 @@
 import { randomUUID } from "node:crypto";
 import { addFile, findUnfinishedUpload, lockFile, setFileState, type StoredFile, type UploadTarget } from "#app/data/files.server.ts";
+import { findFitCheck } from "#app/data/fit-checks.server.ts";
 import { notify } from "#app/data/events.server.ts";
 import { findRevision } from "#app/data/revisions.server.ts";
 import { inShop, type Tx } from "#app/data/scope.server.ts";
@@ -71,14 +72,19 @@ async function findPlace(tx: Tx, target: UploadTarget): Promise<{ ok: true; jobI
     }
     case "mating-part":
       return jobOf(tx, "mating_parts", target.id);
-    case "fit-check":
-      return jobOf(tx, "fit_checks", target.id);
+    case "fit-check": {
+      const check = await findFitCheck(tx, target.id);
+      if (!check) return gone;
+      const revision = await findRevision(tx, check.revisionId);
+      if (revision?.sealedAt) return { ok: false, status: 409, reason: "The revision of this fit check was released and is sealed: no photo can be added to it." };
+      return { ok: true, jobId: check.jobId };
+    }
     case "answer":
       return jobOf(tx, "revisions", target.id);
   }
 }
 
-async function jobOf(tx: Tx, table: "mating_parts" | "fit_checks" | "revisions", id: string): Promise<{ ok: true; jobId: string } | UploadRefusal> {
+async function jobOf(tx: Tx, table: "mating_parts" | "revisions", id: string): Promise<{ ok: true; jobId: string } | UploadRefusal> {
   const row = (await tx(table).where({ id }).first("job_id")) as { job_id: string } | undefined;
   return row ? { ok: true, jobId: row.job_id } : { ok: false, status: 404, reason: "What the file was meant for is not here." };
 }
