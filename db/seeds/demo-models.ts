@@ -28,7 +28,7 @@ const corrected: Array<[number, number]> = [polar(56, 12), polar(56, 74), polar(
 const sprocketCarrier = ({ bore, bolt, dowel, thickness }: { bore: number; bolt: number; dowel: number; thickness: number }): Build => (b) => {
   const body = b.fuse(b.cylinder([0, 0, 0], up, 70, thickness), b.cylinder([0, 0, thickness], up, 42, 12));
   const bolts = [0, 1, 2, 3, 4].map((i) => polar(57, 90 + i * 72));
-  return b.cut(body, b.cylinder([0, 0, -1], up, bore / 2, 60), ...drill(b, bolts, bolt), ...drill(b, [polar(57, 54), polar(57, 234)], dowel));
+  return b.cut(body, b.cylinder([0, 0, -1], up, bore / 2, 60), ...drill(b, bolts, bolt), ...drill(b, [polar(57, 54), polar(57, 198)], dowel));
 };
 
 /** The steering-damper bracket: a block with a clamp bore, two tapped holes and two clearance holes. */

@@ -42,7 +42,10 @@ const signing = (viewer: Viewer): Viewer => ({ ...viewer, provedAt: new Date().t
 export async function seedDemo(): Promise<void> {
   const people = await seedPeople();
   const { owner } = people;
-  await inShop(owner, (tx) => givePresets(tx, owner.shopId));
+  await inShop(owner, async (tx) => {
+    await givePresets(tx, owner.shopId);
+    await tx("instruments").where("name", "like", "Caliper%").update({ trust: "checked", checked_on: "2026-11-20", checked_with: "gauge block 25 mm" });
+  });
   if (await inShop(owner, (tx) => tx("jobs").first("id"))) return;
   await store().ensureBucket();
 
@@ -86,7 +89,7 @@ async function tellRecords(tx: Tx, { designer }: DemoPeople, jobId: string, { pa
   const stock = (await tx("materials").where({ code: material }).first("id")) as { id: string };
   const made = must(await createPart(tx, designer, jobId, { ...values, materialId: stock.id }));
   const matingPartId = await addMatingPart(tx, designer.shopId, jobId, { name: hardware.name, description: hardware.description, cameInOn: "2026-10-05", conditionIn: hardware.conditionIn, wentOutOn: null, conditionOut: "" });
-  const [caliper] = await listInstrumentsToPick(tx);
+  const caliper = (await listInstrumentsToPick(tx)).find(({ name }) => name.startsWith("Caliper"));
   for (const [name, valueMm] of Object.entries(hardware.measured)) {
     await addMeasurement(tx, { shopId: designer.shopId, jobId, matingPartId, name, valueMm, instrumentId: caliper!.id, uncertaintyMm: 0.03, note: "", measuredBy: designer.personId });
   }
@@ -101,7 +104,7 @@ async function tellRecords(tx: Tx, { designer }: DemoPeople, jobId: string, { pa
 async function tellTry({ designer }: DemoPeople, at: { jobId: string; partId: string; matingPartId: string; revisionId: string; stl: string }, told: ToldPart["revisions"][number]["tries"][number]): Promise<void> {
   const { presetId, instrumentId, characteristics } = await inShop(designer, async (tx) => ({
     presetId: (await listPresetsToPick(tx))[0]!.id,
-    instrumentId: (await listInstrumentsToPick(tx))[0]!.id,
+    instrumentId: (await listInstrumentsToPick(tx)).find(({ name }) => name.startsWith("Caliper"))!.id,
     characteristics: await listCharacteristics(tx, at.partId),
   }));
   const print = must(await recordPrint(designer, at.revisionId, { presetId, whole: true, piece: "", proves: [], fileId: at.stl, scale: { x: null, y: null, z: null }, printedOn: "2026-11-20", note: "" }));
