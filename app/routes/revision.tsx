@@ -150,7 +150,7 @@ function Model({ shown: { part, revision, model, holes, callouts, may } }: Part)
       }
       more={
         may.callouts && (
-          <Link to={href("/revisions/:revisionId/callouts", { revisionId: revision.id })} className="inline-flex min-h-11 items-center font-label text-label font-semibold text-soft hover:text-blue">
+          <Link to={href("/revisions/:revisionId/callouts", { revisionId: revision.id })} className="inline-flex min-h-11 items-center font-label text-label font-semibold text-soft hover:text-blue lg:min-h-9">
             Callouts
           </Link>
         )
@@ -163,7 +163,7 @@ function Band({ shown: { part, model, facts, parent, holes, warnings, may } }: P
   if (!facts) return <p className="py-2 text-soft">{model && model.state !== "failed" ? "Measures stand here as soon as the model is measured." : "No measures yet."}</p>;
   return (
     <>
-      <div className="grid gap-x-10 gap-y-6 xl:grid-cols-[minmax(17rem,1fr)_minmax(0,2fr)]">
+      <div className="grid gap-x-10 gap-y-6 xl:grid-cols-[minmax(19.5rem,1fr)_minmax(0,2fr)]">
         <ModelFactsTable facts={facts} parent={parent} noMass={!part.hasDensity ? "no stock chosen" : "not closed"} />
         {model?.kind === "step" && <HoleTable holes={holes} instructions={may.instruct} />}
       </div>
@@ -243,7 +243,7 @@ function Ways({ shown: { revision, gate, may } }: Part) {
   return (
     <nav aria-label="Of this revision" className="mt-4 flex flex-wrap gap-x-6 border-t border-rule pt-2">
       {ways.map(({ label, to }) => (
-        <Link key={to} to={to} className="word inline-flex min-h-11 items-center">
+        <Link key={to} to={to} className="word inline-flex min-h-11 items-center lg:min-h-9">
           {label}
         </Link>
       ))}

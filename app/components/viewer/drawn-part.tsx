@@ -24,13 +24,15 @@ export interface DrawnPartProps {
   edges: boolean;
   /** What lies on the wrong side is not drawn. */
   cut: Plane | null;
+  /** It encloses a volume: also where it is cut, nothing but outsides and the lining are in sight. */
+  closed: boolean;
   picked: PickedFace | null;
 }
 
 /** The part: matt faces, its edges in ink, and an outline where a round face turns away. */
-export function DrawnPart({ model, colours, edges, cut, picked }: DrawnPartProps) {
+export function DrawnPart({ model, colours, edges, cut, closed, picked }: DrawnPartProps) {
   const clippingPlanes = useMemo(() => (cut ? [cut] : []), [cut]);
-  const outline = useOutline(colours);
+  const outline = useOutline(colours, clippingPlanes);
   const pickedGeometry = usePickedGeometry(picked);
   return (
     <group>
@@ -39,8 +41,8 @@ export function DrawnPart({ model, colours, edges, cut, picked }: DrawnPartProps
           <meshLambertMaterial color="white" side={cut ? DoubleSide : undefined} clippingPlanes={clippingPlanes} polygonOffset polygonOffsetFactor={1} polygonOffsetUnits={1} />
         </mesh>
       ))}
-      {/* A cut part shows its inside, which the outline would fill with ink. */}
-      {edges && !cut && model.groups.map(({ geometry }, index) => <mesh key={index} geometry={geometry} material={outline} renderOrder={4} />)}
+      {/* The outline would fill an inside that stays in sight with ink. */}
+      {edges && (!cut || closed) && model.groups.map(({ geometry }, index) => <mesh key={index} geometry={geometry} material={outline} renderOrder={4} />)}
       {edges && model.edges && <InkLines geometry={model.edges} colour={colours.ink} width={EDGE_PX} clippingPlanes={clippingPlanes} />}
       {pickedGeometry && (
         <mesh geometry={pickedGeometry} renderOrder={5}>
@@ -77,7 +79,8 @@ export function InkLines({ geometry, colour, width, clippingPlanes = uncut }: In
 }
 
 /** Back faces pushed out by a pixel on the screen: what remains in sight of them is the outline. */
-function useOutline(colours: SheetColours): MeshBasicMaterial {
+function useOutline(colours: SheetColours, clippingPlanes: Plane[]): MeshBasicMaterial {
+  const invalidate = useThree((state) => state.invalidate);
   const size = useThree((state) => state.size);
   const { material, share } = useMemo(() => {
     const share = { value: new Vector2() };
@@ -97,7 +100,9 @@ function useOutline(colours: SheetColours): MeshBasicMaterial {
   useEffect(() => {
     share.value.set((2 * OUTLINE_PX) / size.width, (2 * OUTLINE_PX) / size.height);
     material.color.copy(colours.ink);
-  }, [material, share, colours, size]);
+    material.clippingPlanes = clippingPlanes;
+    invalidate();
+  }, [material, share, colours, size, clippingPlanes, invalidate]);
   return material;
 }
 

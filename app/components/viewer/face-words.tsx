@@ -4,28 +4,29 @@ import type { FaceGroup, ViewModel } from "./load-model.ts";
 
 export interface FaceWordsProps {
   model: ViewModel;
+  picked: PickedFace | null;
   onPick: (picked: PickedFace) => void;
 }
 
 /** The faces of the part in words, for who does not see or can't point at them. */
-export function FaceWords({ model, onPick }: FaceWordsProps) {
-  // An STL knows no faces: its one group is the whole mesh.
-  if (model.groups.length < 2) return null;
+export function FaceWords({ model, picked, onPick }: FaceWordsProps) {
   const groups = [...model.groups].sort((a, b) => weight(a) - weight(b) || b.faces.length - a.faces.length || a.label.localeCompare(b.label));
   return (
-    <details className="border-t border-hairline">
-      <summary className="flex min-h-11 items-center font-label text-label font-semibold text-soft hover:text-blue">Faces in words</summary>
-      <ul className="grid max-h-56 gap-x-6 overflow-y-auto pb-2 sm:grid-cols-2 xl:grid-cols-3">
-        {groups.map((group) => (
-          <li key={`${group.kind}/${group.label}`}>
-            <button type="button" onClick={() => onPick({ group, face: null })} className="flex min-h-9 w-full items-center text-left hover:text-blue">
-              <span className="first-letter:uppercase">{group.label}</span>
-              {group.faces.length > 1 && <span className="text-soft">, {times(group.faces.length)}</span>}
-            </button>
-          </li>
-        ))}
-      </ul>
-    </details>
+    <ul aria-label="Faces" className="flex max-h-40 flex-wrap gap-x-6 overflow-y-auto">
+      {groups.map((group) => (
+        <li key={`${group.kind}/${group.label}`}>
+          <button
+            type="button"
+            aria-pressed={picked?.group === group}
+            onClick={() => onPick({ group, face: null })}
+            className={`inline-flex min-h-11 items-center text-left hover:text-blue lg:min-h-9 ${picked?.group === group ? "font-semibold text-blue" : ""}`}
+          >
+            {group.label}
+            {group.faces.length > 1 && <span className="font-normal text-soft">, {times(group.faces.length)}</span>}
+          </button>
+        </li>
+      ))}
+    </ul>
   );
 }
 

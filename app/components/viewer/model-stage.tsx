@@ -29,6 +29,8 @@ export interface ModelStageProps {
   onFault: (reason: string) => void;
 }
 
+const tools: readonly Tool[] = ["view", "turn", "section", "measure", "faces"];
+
 const noModel = { model: null, share: 0 as number | null };
 
 /** Fetches the view mesh, and gives its memory back when another one or none is looked at. */
@@ -166,7 +168,7 @@ export default function ModelStage(props: ModelStageProps) {
             {model && (
               <>
                 <CameraRig model={model} colours={colours} handle={camera} />
-                <DrawnPart model={model} colours={colours} edges={edges} cut={cut} picked={picked} />
+                <DrawnPart model={model} colours={colours} edges={edges} cut={cut} closed={closed} picked={picked} />
                 {section && cut && <SectionCut model={model} section={section} cut={cut} colours={colours} closed={closed} />}
               </>
             )}
@@ -190,8 +192,8 @@ export default function ModelStage(props: ModelStageProps) {
         {tool === "section" && section && size && (
           <SectionWords section={section} onSection={setSection} middleOf={(axis) => (model ? middle(model, axis) : 0)} range={{ low: size.min.getComponent(section.axis), high: size.max.getComponent(section.axis) }} />
         )}
-        <ViewerTools tools={onPickPoint ? ["view", "turn", "section", "measure", "callout"] : ["view", "turn", "section", "measure"]} tool={tool} onTool={choose} more={more} />
-        {model && <FaceWords model={model} onPick={setPicked} />}
+        {tool === "faces" && model && <FaceWords model={model} picked={picked} onPick={setPicked} />}
+        <ViewerTools tools={onPickPoint ? [...tools, "callout"] : tools} tool={tool} onTool={choose} more={more} />
       </div>
     </div>
   );
@@ -278,11 +280,11 @@ interface SaidProps {
 
 /** What the tool in hand has to say. */
 function Said({ tool, picked, measured, amount, error_mm, closed, placed }: SaidProps) {
-  const label = picked && <b className="first-letter:uppercase">{picked.group.label}</b>;
+  const label = picked && <b className="inline-block first-letter:uppercase">{picked.group.label}</b>;
   if (tool === "measure") {
     const [from, to] = measured;
-    if (!from) return <span className="text-soft">Press a first point; ends of edges are caught.</span>;
-    if (!to) return <>From {from.snapped ? "an edge's end" : "a point"} on {from.group.label}. Press the second.</>;
+    if (!from) return <span className="text-soft">Press a first point; edges near by are caught.</span>;
+    if (!to) return <>First point {from.snapped ? "on an edge" : "taken"}, {from.group.label}. Press the second.</>;
     const [x, y, z] = [0, 1, 2].map((axis) => Math.abs(to.point_mm[axis]! - from.point_mm[axis]!)) as [number, number, number];
     return (
       <>

@@ -30,7 +30,9 @@ function readColours(): SheetColours {
   const [sheet, ink, soft, blue] = ["--sheet", "--ink", "--soft", "--blue"].map((name) => readColour(probe, name)) as [Color, Color, Color, Color];
   probe.remove();
   const night = ink.getHSL({ h: 0, s: 0, l: 0 }).l > sheet.getHSL({ h: 0, s: 0, l: 0 }).l;
-  return { sheet, ink, soft, blue, lit: mixed(sheet, ink, night ? 0.26 : 0.05), shaded: mixed(sheet, ink, night ? 0.03 : 0.34) };
+  // Ink thins out towards the light on paper; on a blueprint the paper itself grows lighter.
+  const faces = night ? { lit: mixed(sheet, blue, 0.27), shaded: mixed(sheet, blue, 0.03) } : { lit: mixed(sheet, ink, 0.05), shaded: mixed(sheet, ink, 0.34) };
+  return { sheet, ink, soft, blue, ...faces };
 }
 
 let current: SheetColours | null = null;

@@ -5,7 +5,7 @@ import type { CameraHandle } from "./camera-rig.tsx";
 import type { Section } from "./section-cut.tsx";
 import { standardViews, type StandardView } from "./view-pose.ts";
 
-export type Tool = "view" | "turn" | "section" | "measure" | "callout";
+export type Tool = "view" | "turn" | "section" | "measure" | "faces" | "callout";
 
 interface WordProps {
   onClick: () => void;
@@ -20,7 +20,7 @@ function Word({ onClick, pressed, children }: WordProps) {
       type="button"
       onClick={onClick}
       aria-pressed={pressed}
-      className={`relative inline-flex min-h-11 items-center font-label text-label font-semibold hover:text-blue ${pressed === false || pressed === undefined ? "text-soft" : "after:absolute after:inset-x-0 after:bottom-2 after:h-0.5 after:bg-blue"}`}
+      className={`relative inline-flex min-h-11 items-center lg:min-h-9 font-label text-label font-semibold hover:text-blue ${pressed === false || pressed === undefined ? "text-soft" : "after:absolute after:inset-x-0 after:bottom-2 after:h-0.5 lg:after:bottom-1 after:bg-blue"}`}
     >
       {children}
     </button>
@@ -36,7 +36,7 @@ export interface ViewerToolsProps {
   more?: ReactNode;
 }
 
-const toolWords: Record<Tool, string> = { view: "View", turn: "Turn", section: "Section", measure: "Measure", callout: "Place a callout" };
+const toolWords: Record<Tool, string> = { view: "View", turn: "Turn", section: "Section", measure: "Measure", faces: "Faces", callout: "Place a callout" };
 
 export function ViewerTools({ tools, tool, onTool, more }: ViewerToolsProps) {
   return (
