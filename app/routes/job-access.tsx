@@ -59,7 +59,7 @@ export async function action({ request, params, context }: Route.ActionArgs) {
 }
 
 export default function JobAccessPage({ loaderData, actionData }: Route.ComponentProps) {
-  const { job, customer, links, machinists } = loaderData;
+  const { customer, links, machinists } = loaderData;
   return (
     <Sheet>
       <SheetHeading title="Who may look at this job" lead="Owners and designers of the shop always may. Others see just this job, and of it only what their part in it needs." />
