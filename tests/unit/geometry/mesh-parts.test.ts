@@ -92,7 +92,11 @@ describe("edges", () => {
       changed = false;
       for (const { triangles } of all) {
         const least = Math.min(...triangles.map((t) => label.get(t)!));
-        for (const t of triangles) if (label.get(t) !== least) (label.set(t, least), (changed = true));
+        for (const t of triangles) {
+          if (label.get(t) === least) continue;
+          label.set(t, least);
+          changed = true;
+        }
       }
     }
     return {
