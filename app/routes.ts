@@ -21,11 +21,20 @@ export default [
     route("jobs/:jobId/edit", "routes/job-edit.tsx"),
     route("jobs/:jobId/access", "routes/job-access.tsx"),
     route("jobs/:jobId/parts/new", "routes/part-new.tsx"),
+    route("parts/:partId", "routes/part.tsx"),
+    route("parts/:partId/edit", "routes/part-edit.tsx"),
+    route("parts/:partId/characteristics/new", "routes/characteristic.tsx", { id: "characteristic-new" }),
+    route("characteristics/:characteristicId", "routes/characteristic.tsx"),
 
     // Prints, fit checks, callouts
     route("revisions/:revisionId/prints/new", "routes/print-new.tsx"),
     route("prints/:printId", "routes/print.tsx"),
     route("fit-checks/:fitCheckId", "routes/fit-check.tsx"),
+    route("revisions/:revisionId/carry-over", "routes/carry-over.tsx"),
+    route("revisions/:revisionId/callouts", "routes/callouts.tsx"),
+    route("revisions/:revisionId/callouts/new", "routes/callout-new.tsx"),
+    route("callouts/:calloutId", "routes/callout.tsx"),
+    route("photos/:fileId", "routes/photo.tsx"),
 
     // A revision: its sheet, its files
     route("parts/:partId/revisions/new", "routes/revision-new.tsx"),
@@ -64,6 +73,8 @@ export default [
   // Tables as files
   route("customers.csv", "routes/customers-csv.ts"),
   route("jobs.csv", "routes/jobs-csv.ts"),
+  route("jobs/:jobId/parts.csv", "routes/parts-csv.ts"),
+  route("parts/:partId/characteristics.csv", "routes/characteristics-csv.ts"),
 
   ...prefix("api", [
     route("events", "routes/api-events.ts"),

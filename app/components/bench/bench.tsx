@@ -77,7 +77,9 @@ export function Bench(props: BenchProps) {
     const characteristic = list[draft.at];
     if (!characteristic) {
       const record = () => {
-        const finished: FitDraft = { ...draft, finished: true, triedAt: new Date().toISOString() };
+        // What was read for another mating part, picked before, is not part of this fit check.
+        const entries = Object.fromEntries(Object.entries(draft.entries).filter(([id]) => list.some((one) => one.id === id)));
+        const finished: FitDraft = { ...draft, entries, finished: true, triedAt: new Date().toISOString() };
         change(() => finished);
       };
       return <FinishStep characteristics={list} draft={draft} change={change} photos={photos} onGo={go} onBack={() => go(list.length - 1)} onRecord={record} />;
