@@ -133,12 +133,16 @@ export interface PartOnJob extends Part {
   letter: string | null;
 }
 
-/** The parts of a job, each with its newest revision that is not set aside. */
-export async function listPartsWithLatest(tx: Tx, jobId: string): Promise<PartOnJob[]> {
+/**
+ * The parts of a job, each with its newest revision that is not set aside.
+ *
+ * @param onlyShared of the revisions that were shown to the customer
+ */
+export async function listPartsWithLatest(tx: Tx, jobId: string, { onlyShared }: { onlyShared: boolean }): Promise<PartOnJob[]> {
   const rows = (await selectParts(tx)
     .where("parts.job_id", jobId)
     .orderBy("parts.number")
-    .joinRaw(`left join lateral (select r.id, r.ordinal from revisions r where r.part_id = parts.id order by r.set_aside_at is not null, r.ordinal desc limit 1) latest on true`)
+    .joinRaw(`left join lateral (select r.id, r.ordinal from revisions r where r.part_id = parts.id ${onlyShared ? "and r.shared_at is not null" : ""} order by r.set_aside_at is not null, r.ordinal desc limit 1) latest on true`)
     .joinRaw(`left join lateral (select d.letter from decisions d where d.part_id = parts.id and d.letter is not null order by d.at desc limit 1) released on true`)
     .select("latest.id as latest_id", "latest.ordinal as latest_ordinal", "released.letter")) as Array<PartRow & { latest_id: string | null; latest_ordinal: number | null; letter: string | null }>;
   return rows.map((row) => ({ ...toPart(row), latestRevisionId: row.latest_id, latestOrdinal: row.latest_ordinal, letter: row.letter }));

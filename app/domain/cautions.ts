@@ -109,7 +109,7 @@ export function cautionsFor(hazards: Hazards): Caution[] {
 
 const hotFluids: ReadonlySet<Fluid> = new Set<Fluid>(["water", "coolant", "oil", "exhaust-gas"]);
 
-const fluidWords: Record<Fluid, string> = {
+export const fluidWords: Record<Fluid, string> = {
   air: "air",
   water: "water",
   coolant: "coolant",

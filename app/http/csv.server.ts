@@ -11,6 +11,6 @@ export function csvResponse(name: string, columns: Array<{ key: string; header: 
     { header: true, columns: columns.map(({ header }) => header), cast: { boolean: (value) => (value ? "yes" : "no"), date: (value) => value.toISOString() } },
   );
   return new Response(`\uFEFF${body}`, {
-    headers: { "Content-Type": "text/csv; charset=utf-8", "Content-Disposition": `attachment; filename="${name}.csv"`, "Cache-Control": "no-store" },
+    headers: { "Content-Type": "text/csv; charset=utf-8", "Content-Disposition": `attachment; filename="${name.replace(/[^\w.-]+/g, "-")}.csv"`, "Cache-Control": "no-store" },
   });
 }

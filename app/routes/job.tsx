@@ -3,6 +3,7 @@ import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { Day } from "#app/components/day.tsx";
 import { Facts } from "#app/components/facts.tsx";
 import { LinkButton } from "#app/components/link-button.tsx";
+import { useLive } from "#app/components/live.tsx";
 import { Section, Sheet, SheetHeading } from "#app/components/sheet.tsx";
 import { findCustomer } from "#app/data/customers.server.ts";
 import { findJob } from "#app/data/jobs.server.ts";
@@ -11,6 +12,7 @@ import { listPartsWithLatest, type PartOnJob } from "#app/data/parts.server.ts";
 import { listPayments } from "#app/data/payments.server.ts";
 import { findShop } from "#app/data/shops.server.ts";
 import { idParam, inShop, orNotFound } from "#app/data/scope.server.ts";
+import { seesOnlyShared } from "#app/data/shared.server.ts";
 import { formatMoney } from "#app/domain/money.ts";
 import { can } from "#app/domain/permissions.ts";
 import { requireCan } from "#app/http/context.server.ts";
@@ -34,7 +36,7 @@ export async function loader({ params, context }: Route.LoaderArgs) {
       job: { id: job.id, number: job.number, title: job.title, dueOn: job.dueOn, promise: job.promise, setAside: job.setAside },
       customer: customer ? { name: customer.name, email: customer.email, phone: customer.phone, id: customer.id } : null,
       deposit: may("deposit:read") ? { agreed: job.depositAgreedMinor === null ? null : formatMoney(job.depositAgreedMinor, shop.currency), paid: formatMoney(paid, shop.currency), noneReason: job.depositNoneReason, count: payments.length } : null,
-      parts: await listPartsWithLatest(tx, job.id),
+      parts: (await listPartsWithLatest(tx, job.id, { onlyShared: seesOnlyShared(viewer) })).map(toRow),
       matingParts: may("mating-part:read") ? await listMatingParts(tx, job.id) : [],
       mayWrite: may("job:write"),
       mayRecordDeposit: may("deposit:record"),
@@ -44,7 +46,9 @@ export async function loader({ params, context }: Route.LoaderArgs) {
   });
 }
 
-const partColumns: Column<PartOnJob>[] = [
+const toRow = ({ id, number, name, materialName, quantity, latestRevisionId, latestOrdinal, letter, setAside }: PartOnJob) => ({ id, number, name, materialName, quantity, latestRevisionId, latestOrdinal, letter, setAside });
+
+const partColumns: Column<ReturnType<typeof toRow>>[] = [
   { key: "number", label: "Number", cell: (row) => row.number },
   { key: "name", label: "Part", cell: (row) => (row.setAside ? `${row.name} (set aside)` : row.name) },
   { key: "material", label: "Stock", cell: (row) => row.materialName ?? "not chosen" },
@@ -53,7 +57,7 @@ const partColumns: Column<PartOnJob>[] = [
 ];
 
 const matingColumns: Column<MatingPart>[] = [
-  { key: "name", label: "Hardware", cell: (row) => row.name },
+  { key: "name", label: "Hardware", cell: (row) => (row.setAside ? `${row.name} (set aside)` : row.name) },
   { key: "in", label: "Came in", cell: (row) => (row.cameInOn ? <Day at={row.cameInOn} /> : "not here") },
   { key: "out", label: "Went out", cell: (row) => (row.wentOutOn ? <Day at={row.wentOutOn} /> : "") },
   { key: "measured", label: "Measured", align: "number", cell: (row) => `${row.measurements}` },
@@ -62,6 +66,7 @@ const matingColumns: Column<MatingPart>[] = [
 export default function JobPage({ loaderData }: Route.ComponentProps) {
   const { job, customer, deposit, parts, matingParts, mayWrite } = loaderData;
   const params = { jobId: job.id };
+  useLive(job.id);
   return (
     <Sheet
       rightLabel="About the job"
@@ -97,7 +102,7 @@ export default function JobPage({ loaderData }: Route.ComponentProps) {
         </p>
       )}
       <Section title="Parts" actions={mayWrite ? <LinkButton to={href("/jobs/:jobId/parts/new", params)} weight="primary">Add a part</LinkButton> : undefined}>
-        <DataTable caption="Parts" captionHidden columns={partColumns} rows={parts} rowKey={(row) => row.id} rowHref={(row) => (row.latestRevisionId ? href("/revisions/:revisionId", { revisionId: row.latestRevisionId }) : href("/parts/:partId", { partId: row.id }))} empty={{ text: "No part yet. Drop its STEP, or begin from a kit." }} />
+        <DataTable caption="Parts" captionHidden columns={partColumns} rows={parts} rowKey={(row) => row.id} rowHref={(row) => (row.latestRevisionId ? href("/revisions/:revisionId", { revisionId: row.latestRevisionId }) : href("/parts/:partId", { partId: row.id }))} csvHref={parts.length > 0 ? href("/jobs/:jobId/parts.csv", params) : undefined} empty={{ text: "No part yet. Drop its STEP, or begin from a kit." }} />
       </Section>
       {loaderData.seesHardware && (
         <Section title="The customer's hardware" actions={mayWrite ? <LinkButton to={href("/jobs/:jobId/mating-parts/new", params)}>Take in hardware</LinkButton> : undefined}>

@@ -42,11 +42,11 @@ export async function putCharacteristicAside(tx: Tx, viewer: Viewer, id: string,
   return { partId: characteristic.partId };
 }
 
-/** Puts it one place earlier or later among those that are tried. */
-export async function moveCharacteristic(tx: Tx, viewer: Viewer, id: string, by: 1 | -1): Promise<{ partId: string }> {
+/** Puts it one place earlier or later among those of its part that are tried. */
+export async function moveCharacteristic(tx: Tx, viewer: Viewer, id: string, by: 1 | -1, partId: string): Promise<void> {
   const characteristic = orNotFound(await findCharacteristic(tx, id));
+  if (characteristic.partId !== partId) return void orNotFound(undefined);
   if (await moveRow(tx, "characteristics", id, by, { part_id: characteristic.partId })) await enter(tx, viewer, "moved a characteristic", characteristic, characteristic);
-  return { partId: characteristic.partId };
 }
 
 async function enter(tx: Tx, viewer: Viewer, action: string, at: { id: string; jobId: string; partId: string }, values: CharacteristicValues): Promise<void> {
