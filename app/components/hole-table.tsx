@@ -24,11 +24,16 @@ export interface HoleTableProps {
 export function HoleTable({ holes, instructions }: HoleTableProps) {
   const units = useUnits();
   const columns: Column<HoleRow>[] = [
-    { key: "hole", label: "Hole", cell: ({ places }) => <span className="whitespace-nowrap">{places}</span> },
+    { key: "hole", label: "Hole", cell: ({ places }) => (
+        <span className="whitespace-nowrap">
+          <span className="sm:sr-only">{/\D/.test(places) ? "Holes " : "Hole "}</span>
+          {places}
+        </span>
+      ) },
     { key: "diameter", label: `Ø ${units}`, align: "number", cell: ({ diameterMm }) => <Length mm={diameterMm} digits={2} align={2} bare /> },
     { key: "depth", label: "Depth", align: "number", cell: ({ depthMm }) => (depthMm === null ? "through" : <Length mm={depthMm} digits={2} bare />) },
     { key: "entry", label: "Entry", cell: (row) => <Entry row={row} /> },
-    { key: "circle", label: "Lie", cell: ({ circle }) => circle && <>on a circle of <Length mm={circle.diameterMm} digits={2} />{circle.equallySpaced ? "" : ", unevenly"}</> },
+    { key: "circle", label: "Lie", cell: ({ circle }) => (circle ? <>on a circle of <Length mm={circle.diameterMm} digits={2} />{circle.equallySpaced ? "" : ", unevenly"}</> : "–") },
     ...(instructions ? [{ key: "instruction", label: "Instruction", cell: ({ instruction }: HoleRow) => instruction ?? <span className="text-soft">not stated</span> }] : []),
   ];
   const told = columns.filter(({ key }) => key !== "circle" || holes.some(({ circle }) => circle));

@@ -74,7 +74,7 @@ export function ModelFactsTable({ facts, parent, noMass }: ModelFactsTableProps)
             <th scope="row" className="py-2 pr-4 align-baseline font-normal">
               {label}
             </th>
-            <td className="py-2 pr-3 align-baseline">{value}</td>
+            <td className="whitespace-nowrap py-2 pr-3 align-baseline">{value}</td>
             <td className="whitespace-nowrap py-2 text-right align-baseline font-semibold text-attention">{change || null}</td>
           </tr>
         ))}

@@ -43,12 +43,12 @@ export function ModelFile({ file, change }: ModelFileProps) {
         <h3 className="text-base [overflow-wrap:anywhere]">
           {file.kind === "step" ? "STEP" : "STL"}, {name}
         </h3>
-        <p className="flex flex-wrap items-baseline gap-x-6">
+        <div className="flex flex-wrap items-baseline gap-x-6">
           <a href={`/files/${file.id}`} download className="word inline-flex min-h-11 items-center">
             Download
           </a>
           {change?.remove}
-        </p>
+        </div>
       </div>
       <p className="text-sm text-soft">
         {bytesText(file.bytes)}, SHA-256 <span title={file.sha256}>{file.sha256.slice(0, 12)}…</span>

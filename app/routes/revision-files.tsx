@@ -159,12 +159,12 @@ export default function RevisionFilesPage({ loaderData, actionData }: Route.Comp
                   ) : (
                     <ProgressLine label="Making the picture" share={null} />
                   )}
-                  <p className="mt-1 flex flex-wrap items-baseline justify-between gap-x-4">
-                    <span className="text-sm text-soft [overflow-wrap:anywhere]">
+                  <div className="mt-1 flex flex-wrap items-baseline justify-between gap-x-4">
+                    <p className="text-sm text-soft [overflow-wrap:anywhere]">
                       {photo.name}, {photo.uploadedByName}
-                    </span>
+                    </p>
                     {!revision.sealed && removal(photo)}
-                  </p>
+                  </div>
                 </li>
               ))}
             </ul>

@@ -79,9 +79,6 @@ export default function RevisionPage({ loaderData, actionData }: Route.Component
       rightLabel={gate ? "Gate" : "About this revision"}
       right={
         <>
-          <h1 className="sr-only">
-            {part.name}, revision {revision.ordinal}
-          </h1>
           {revision.setAside && <AsideNotice shown={loaderData} answer={actionData} />}
           {gate ? (
             <>
@@ -98,6 +95,9 @@ export default function RevisionPage({ loaderData, actionData }: Route.Component
       band={<Band shown={loaderData} />}
       titleBlock={<Block shown={loaderData} />}
     >
+      <h1 className="sr-only">
+        {part.name}, revision {revision.ordinal}
+      </h1>
       <Model shown={loaderData} />
     </Sheet>
   );
@@ -163,7 +163,7 @@ function Band({ shown: { part, model, facts, parent, holes, warnings, may } }: P
   if (!facts) return <p className="py-2 text-soft">{model && model.state !== "failed" ? "Measures stand here as soon as the model is measured." : "No measures yet."}</p>;
   return (
     <>
-      <div className="grid gap-x-10 gap-y-6 xl:grid-cols-[minmax(19.5rem,1fr)_minmax(0,2fr)]">
+      <div className="grid gap-x-10 gap-y-6 xl:grid-cols-[minmax(21rem,1fr)_minmax(0,2fr)]">
         <ModelFactsTable facts={facts} parent={parent} noMass={!part.hasDensity ? "no stock chosen" : "not closed"} />
         {model?.kind === "step" && <HoleTable holes={holes} instructions={may.instruct} />}
       </div>

@@ -16,6 +16,8 @@ export interface LayerFrame {
   isHidden: (point: Point) => boolean;
   width: number;
   height: number;
+  /** Between which the part lies, px from the left. */
+  part: { left: number; right: number };
 }
 
 export interface MarkerLayerHandle {

@@ -9,7 +9,7 @@ import { CameraRig, type CameraHandle } from "./camera-rig.tsx";
 import { DrawnPart, type PickedFace } from "./drawn-part.tsx";
 import { FaceWords } from "./face-words.tsx";
 import { loadModel, ViewFault, type ViewModel } from "./load-model.ts";
-import { MarkerLayer, type Marker, type MarkerLayerHandle } from "./marker-layer.tsx";
+import { MarkerLayer, type LayerFrame, type Marker, type MarkerLayerHandle } from "./marker-layer.tsx";
 import { isHidden, pickAt, toScreen, type Pick } from "./pick.ts";
 import { cutOf, SectionCut, type Section } from "./section-cut.tsx";
 import { useSheetColours } from "./sheet-colours.ts";
@@ -151,7 +151,7 @@ export default function ModelStage(props: ModelStageProps) {
         onKeyDown={press}
         onPointerDown={({ clientX, clientY, isPrimary }) => (pressed.current = isPrimary ? { x: clientX, y: clientY } : null)}
         onPointerUp={release}
-        className="group/stage relative min-h-[20rem] flex-1 touch-none bg-[radial-gradient(closest-side,var(--wash),transparent)] -outline-offset-2"
+        className="group/stage relative min-h-[20rem] flex-1 lg:min-h-[26rem] touch-none bg-[radial-gradient(closest-side,var(--wash),transparent)] -outline-offset-2"
       >
         <div className="absolute inset-0">
           <Canvas orthographic frameloop="demand" flat dpr={[1, 2]} gl={{ antialias: true, stencil: true, alpha: true }} camera={{ up: [0, 0, 1], position: [0, -1, 0] }} onCreated={({ gl }) => {
@@ -160,7 +160,7 @@ export default function ModelStage(props: ModelStageProps) {
             }}>
             <Reporter
               stage={stage}
-              onFrame={(toPixels, behind, view) => layer.current?.draw({ toScreen: toPixels, isHidden: behind, ...view })}
+              onFrame={(frame) => layer.current?.draw(frame)}
               model={model}
               cut={cut}
               changes={[markers, measured, placed]}
@@ -237,7 +237,7 @@ interface ReporterProps {
   stage: { current: StageHandle | null };
   model: ViewModel | null;
   cut: Plane | null;
-  onFrame: (toScreen: (point: Point) => { x: number; y: number }, isHidden: (point: Point) => boolean, view: { width: number; height: number }) => void;
+  onFrame: (frame: LayerFrame) => void;
   /** When one of these changes, one frame is drawn. */
   changes: readonly unknown[];
 }
@@ -254,9 +254,15 @@ function Reporter({ stage, model, cut, onFrame, changes }: ReporterProps) {
   useFrame(() => {
     if (!model) return;
     camera.updateMatrixWorld();
-    onFrame((point) => toScreen(camera, size, point), (point) => isHidden(model, camera, point, cut), size);
+    const onScreen = (point: Point) => toScreen(camera, size, point);
+    const across = corners(model).map((corner) => onScreen(corner).x);
+    onFrame({ toScreen: onScreen, isHidden: (point) => isHidden(model, camera, point, cut), width: size.width, height: size.height, part: { left: Math.min(...across), right: Math.max(...across) } });
   });
   return null;
+}
+
+function corners({ box: { min, max } }: ViewModel): Point[] {
+  return [min.x, max.x].flatMap((x) => [min.y, max.y].flatMap((y) => [min.z, max.z].map((z): Point => [x, y, z])));
 }
 
 /** Where Enter picks; only while the keyboard has the view. */

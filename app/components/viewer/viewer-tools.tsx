@@ -27,7 +27,7 @@ function Word({ onClick, pressed, children }: WordProps) {
   );
 }
 
-const row = "flex flex-wrap items-center gap-x-5 gap-y-0";
+const row = "flex flex-wrap items-center gap-x-4 sm:gap-x-5";
 
 export interface ViewerToolsProps {
   tools: readonly Tool[];
@@ -64,7 +64,7 @@ export function ViewWords({ camera, edges, onEdges }: ViewWordsProps) {
     <div role="group" aria-label="From where" className={row}>
       {views.map((view) => (
         <Word key={view} onClick={() => camera()?.show(view)}>
-          <span className="first-letter:uppercase">{view}</span>
+          {view.replace(/^./, (letter) => letter.toUpperCase())}
         </Word>
       ))}
       <Word onClick={() => camera()?.fit()}>Fit</Word>
