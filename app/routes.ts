@@ -20,6 +20,10 @@ export default [
     route("jobs/:jobId", "routes/job.tsx"),
     route("jobs/:jobId/edit", "routes/job-edit.tsx"),
     route("jobs/:jobId/access", "routes/job-access.tsx"),
+    route("jobs/:jobId/deposit", "routes/deposit.tsx"),
+    route("jobs/:jobId/mating-parts/new", "routes/mating-part-edit.tsx", { id: "mating-part-new" }),
+    route("mating-parts/:matingPartId", "routes/mating-part.tsx"),
+    route("mating-parts/:matingPartId/edit", "routes/mating-part-edit.tsx"),
     route("jobs/:jobId/parts/new", "routes/part-new.tsx"),
     route("parts/:partId", "routes/part.tsx"),
     route("parts/:partId/edit", "routes/part-edit.tsx"),
@@ -74,6 +78,7 @@ export default [
   route("customers.csv", "routes/customers-csv.ts"),
   route("jobs.csv", "routes/jobs-csv.ts"),
   route("jobs/:jobId/parts.csv", "routes/parts-csv.ts"),
+  route("mating-parts/:matingPartId/measurements.csv", "routes/measurements-csv.ts"),
   route("parts/:partId/characteristics.csv", "routes/characteristics-csv.ts"),
 
   ...prefix("api", [

@@ -41,6 +41,11 @@ export function parseMoney(text: string, currency: string): number | null {
   return Number.isSafeInteger(amount) ? amount : null;
 }
 
+/** An amount as it stands in an entry field: "1250.50", without code and grouping; `parseMoney` reads it again. */
+export function amountText(amountMinor: number, currency: string): string {
+  return formatMoney(amountMinor, currency).slice(currency.length + 1).replaceAll(",", "");
+}
+
 /**
  * Exact sum of minor units of one currency; a refund is negative.
  *

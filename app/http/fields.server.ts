@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { currencyDecimals, parseMoney } from "#app/domain/money.ts";
 import { parseLength } from "#app/units.ts";
 import type { LengthUnit } from "./form.server.ts";
 
@@ -89,14 +90,14 @@ function readLength(text: string, units: LengthUnit, range: Range, context: z.co
   return parsed.mm;
 }
 
-/** Money as typed, "480" or "480.00", in minor units. */
-export const money = (say: string) =>
+/** Money as typed, "480" or "480.50", in minor units of the currency; `signed` takes "-480" too. Never zero. */
+export const amount = (currency: string, say: string, { signed = false }: { signed?: boolean } = {}) =>
   z.string({ error: say }).trim().min(1, say).transform((text, context) => {
-    const plain = text.replace(/\s/g, "").replace(",", ".");
-    if (!/^-?\d{1,9}(\.\d{1,2})?$/.test(plain)) {
-      context.addIssue({ code: "custom", message: "Give an amount such as 480 or 480.50" });
+    const below = signed && /^[-−]/.test(text);
+    const minor = parseMoney(below ? text.slice(1) : text, currency);
+    if (!minor) {
+      context.addIssue({ code: "custom", message: minor === 0 ? "Give an amount that is not zero" : `Give an amount such as 480${currencyDecimals(currency) > 0 ? " or 480.50" : ""}` });
       return z.NEVER;
     }
-    const [units = "0", cents = ""] = plain.split(".");
-    return (units.startsWith("-") ? -1 : 1) * (Math.abs(Number(units)) * 100 + Number(cents.padEnd(2, "0")));
+    return below ? -minor : minor;
   });

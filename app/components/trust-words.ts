@@ -1,0 +1,11 @@
+import { dayText } from "#app/components/day.tsx";
+import { trustToday, type InstrumentTrust } from "#app/domain/trust.ts";
+
+/** An instrument in a list to pick from: its name, its uncertainty, and whether that can be believed today. */
+export function instrumentLabel(instrument: InstrumentTrust & { name: string; uncertaintyMm: number }, today: string): string {
+  return `${instrument.name}, ± ${instrument.uncertaintyMm} mm, ${trustWords(instrument, today)}`;
+}
+
+export function trustWords(instrument: InstrumentTrust, today: string): string {
+  return trustToday(instrument, today, (at) => dayText({ at })).words;
+}
