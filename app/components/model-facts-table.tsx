@@ -46,12 +46,12 @@ export function ModelFactsTable({ facts, parent, noMass }: ModelFactsTableProps)
     });
   }
   if (facts.volumeMm3 !== null) {
-    const change = difference(facts.volumeMm3, before?.volumeMm3, facts.volumeMm3 * 1e-5);
-    rows.push({ label: "Volume", value: <Volume mm3={facts.volumeMm3} />, change: change !== null && <Num value={(100 * change) / facts.volumeMm3} digits={2} signed unit="%" /> });
+    const change = difference(facts.volumeMm3, before?.volumeMm3, facts.volumeMm3 * 5e-5);
+    rows.push({ label: "Volume", value: <Volume mm3={facts.volumeMm3} />, change: change !== null && <Num value={(100 * change) / before!.volumeMm3!} digits={2} signed unit="%" /> });
   }
   if (facts.areaMm2 !== null) {
-    const change = difference(facts.areaMm2, before?.areaMm2, facts.areaMm2 * 1e-5);
-    rows.push({ label: "Surface", value: <Area mm2={facts.areaMm2} />, change: change !== null && <Num value={(100 * change) / facts.areaMm2} digits={2} signed unit="%" /> });
+    const change = difference(facts.areaMm2, before?.areaMm2, facts.areaMm2 * 5e-5);
+    rows.push({ label: "Surface", value: <Area mm2={facts.areaMm2} />, change: change !== null && <Num value={(100 * change) / before!.areaMm2!} digits={2} signed unit="%" /> });
   }
   length("Thinnest wall", facts.thinnestWallMm, before?.thinnestWallMm);
   length("Smallest inside radius", facts.smallestInsideRadiusMm, before?.smallestInsideRadiusMm);
@@ -83,12 +83,12 @@ export function ModelFactsTable({ facts, parent, noMass }: ModelFactsTableProps)
   );
 }
 
-/** "x +2.0, z −0.5": only the directions that changed. */
+/** "x +2.0" and "z −0.5" below it: only the directions that changed. */
 function sizeChange(now: ModelFacts["sizeMm"], before: ModelFacts["sizeMm"], units: "mm" | "in"): ReactNode {
   if (!now || !before) return null;
   const changed = (["x", "y", "z"] as const).flatMap((axis, i) => {
     const change = difference(now[i]!, before[i]!, 0.005);
     return change === null ? [] : [`${axis} ${numberText(lengthIn(change, units), units === "mm" ? 2 : 4, true)}`];
   });
-  return changed.join(", ") || null;
+  return changed.length === 0 ? null : changed.map((one) => <span key={one} className="block">{one}</span>);
 }

@@ -30,8 +30,11 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
   const shown = shownRevisions(await listRevisions(tx, part.id), viewer);
   const facts = await listRevisionFacts(tx, part.id);
   const evaluated = await evaluateRevision(tx, revision.id);
-  const cleared = evaluated?.result.verdict === "go";
-  const statusOf = (id: string) => revisionStatus({ ...facts.get(id)!, gateCleared: id === revision.id && cleared });
+  const cleared = new Set(evaluated?.result.verdict === "go" ? [revision.id] : []);
+  // The only other one of which "cleared" is worth the asking: the newest that was tried and still counts.
+  const other = shown.findLast(({ id }) => id !== revision.id && mayBeCleared(facts.get(id)!));
+  if (other && (await evaluateRevision(tx, other.id))?.result.verdict === "go") cleared.add(other.id);
+  const statusOf = (id: string) => revisionStatus({ ...facts.get(id)!, gateCleared: cleared.has(id) });
 
   const files = await listRevisionFiles(tx, revision.id);
   const model = findModel(files, viewer);
@@ -68,7 +71,7 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
     holes: model?.document ? holeRows(model.document, holes) : [],
     instructions: instructions ? { generalTolerance: instructions.generalTolerance, edgeBreak: instructions.edgeBreak, coating: instructions.coating, confirmedName: instructions.confirmedName } : null,
     callouts: callouts.map((callout) => ({ id: callout.id, number: callout.number, pointMm: callout.pointMm, body: callout.body, open: callout.closedAt === null })),
-    gate: evaluated && may("gate:read") ? { verdict: evaluated.result.verdict, lines: gateViews(viewer, evaluated), blocked: evaluated.result.blocked.map((missing) => missingView(viewer, evaluated.records, missing)) } : null,
+    gate: evaluated && may("gate:read") ? { verdict: evaluated.result.verdict, lines: gateViews(viewer, evaluated).map(oneAction), blocked: evaluated.result.blocked.map((missing) => missingView(viewer, evaluated.records, missing)) } : null,
     files: may("model:download") ? files.filter(({ role, state }) => state === "stored" && role !== "photo").map(({ id, role, name }) => ({ id, role, name })) : [],
     may: {
       write: may("revision:write") && !part.setAside,
@@ -86,6 +89,14 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
 }
 
 export type SheetData = Awaited<ReturnType<typeof loadSheet>>;
+
+const mayBeCleared = ({ fitChecked, released, setAside, laterReleased }: RecordedFacts) => fitChecked && !released && !setAside && !laterReleased;
+
+/** A line asks for one thing at a time on the sheet; the gate's page has them all. */
+function oneAction<Line extends { missing: { what: string }[] }>(line: Line): Line {
+  const [first, ...rest] = line.missing;
+  return { ...line, missing: first ? [rest.length === 0 ? first : { ...first, what: `${first.what}; and ${rest.length} more` }] : [] };
+}
 
 /** A customer knows the shown revisions; each hangs on the nearest ancestor that is shown too. */
 function shownRevisions(revisions: readonly Revision[], viewer: Viewer): Revision[] {

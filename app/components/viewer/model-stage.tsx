@@ -142,7 +142,7 @@ export default function ModelStage(props: ModelStageProps) {
   const amount = distance === null ? "" : `${numberText(lengthIn(distance, units), units === "mm" ? 2 : 4)} ${units}`;
   const size = model?.box;
   return (
-    <div className="flex h-full min-h-0 flex-col">
+    <div className="flex h-full min-h-0 flex-col lg:sticky lg:top-2 lg:max-h-[calc(100dvh-1rem)]">
       <div
         role="application"
         aria-roledescription="view of a model"
