@@ -61,6 +61,24 @@ export default [
     // The customer's side
     route("your-job/:jobId", "routes/your-job.tsx"),
 
+    // What the shop works with
+    route("shop", "routes/shop.ts"),
+    route("shop/instruments", "routes/shop-instruments.tsx"),
+    route("shop/instruments/new", "routes/shop-instrument.tsx", { id: "instrument-new" }),
+    route("shop/instruments/:instrumentId", "routes/shop-instrument.tsx"),
+    route("shop/printers", "routes/shop-printers.tsx"),
+    route("shop/printers/new", "routes/shop-printer.tsx", { id: "printer-new" }),
+    route("shop/printers/:printerId", "routes/shop-printer.tsx"),
+    route("shop/presets", "routes/shop-presets.tsx"),
+    route("shop/presets/new", "routes/shop-preset.tsx", { id: "preset-new" }),
+    route("shop/presets/:presetId", "routes/shop-preset.tsx"),
+    route("shop/materials", "routes/shop-materials.tsx"),
+    route("shop/materials/new", "routes/shop-material.tsx", { id: "material-new" }),
+    route("shop/materials/:materialId", "routes/shop-material.tsx"),
+    route("shop/questions", "routes/shop-questions.tsx"),
+    route("shop/questions/:questionId", "routes/shop-question.tsx"),
+    route("shop/settings", "routes/shop-settings.tsx"),
+
     // Customers
     route("customers", "routes/customers.tsx"),
     route("customers/new", "routes/customer.tsx", { id: "customer-new" }),
@@ -78,6 +96,7 @@ export default [
   route("customers.csv", "routes/customers-csv.ts"),
   route("jobs.csv", "routes/jobs-csv.ts"),
   route("jobs/:jobId/parts.csv", "routes/parts-csv.ts"),
+  ...["instruments", "printers", "presets", "materials", "questions"].map((table) => route(`shop/${table}.csv`, "routes/shop-csv.ts", { id: `${table}-csv` })),
   route("mating-parts/:matingPartId/measurements.csv", "routes/measurements-csv.ts"),
   route("parts/:partId/characteristics.csv", "routes/characteristics-csv.ts"),
 

@@ -21,6 +21,12 @@ export function readTableQuery(params: URLSearchParams, sortable: readonly strin
   };
 }
 
+/** The same of a request, for tables whose rows can be set aside: `?aside=1` lists those too. */
+export function readListRequest(request: Request, sorts: Record<string, string>, defaultSort?: string): TableQuery & { withSetAside: boolean } {
+  const { searchParams } = new URL(request.url);
+  return { ...readTableQuery(searchParams, Object.keys(sorts), defaultSort ?? Object.keys(sorts)[0]), withSetAside: searchParams.get("aside") === "1" };
+}
+
 function sortOf(text: string | null, sortable: readonly string[]): TableQuery["sort"] {
   if (!text) return null;
   const descending = text.startsWith("-");

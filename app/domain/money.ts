@@ -7,6 +7,9 @@ function checked(amountMinor: number): number {
   return amountMinor;
 }
 
+/** Is this the code of a currency in use? */
+export const isCurrency = (code: string): boolean => Intl.supportedValuesOf("currency").includes(code);
+
 /** How many decimals a currency is written with: USD 2, JPY 0, KWD 3. */
 export function currencyDecimals(currency: string): number {
   return new Intl.NumberFormat("en", { style: "currency", currency }).resolvedOptions().maximumFractionDigits ?? 2;

@@ -31,3 +31,9 @@ export function mistaken({ errors, values }: { errors: FieldErrors; values: Reco
 export function overtaken(form: FormData, { labels, yours, theirs, rowVersion }: { labels: Record<string, string>; yours: Record<string, string>; theirs: Record<string, string>; rowVersion: number }) {
   return data<Refusal>({ errors: {}, values: { ...typedValues(form), rowVersion: String(rowVersion) }, conflict: conflictsBetween(labels, yours, theirs), rowVersion }, { status: 409 });
 }
+
+/** The version that the form was filled from; a missing one is 0, which no row has. */
+export const readVersion = (form: FormData): number => Number(form.get("rowVersion")) || 0;
+
+/** Which row a form changes, and at which version; null for a new one. */
+export const readExisting = (id: string | null, form: FormData): { id: string; rowVersion: number } | null => (id === null ? null : { id, rowVersion: readVersion(form) });

@@ -10,9 +10,8 @@ import { findPart } from "#app/data/parts.server.ts";
 import { idParam, inShop, orNotFound } from "#app/data/scope.server.ts";
 import { readCharacteristicForm } from "#app/http/characteristic-form.server.ts";
 import { requireCan } from "#app/http/context.server.ts";
-import { rowVersion } from "#app/http/fields.server.ts";
 import type { FieldErrors, LengthUnit } from "#app/http/form.server.ts";
-import { mistaken, overtaken, typedValues } from "#app/http/refusals.server.ts";
+import { mistaken, overtaken, readVersion, typedValues } from "#app/http/refusals.server.ts";
 import { createCharacteristic, editCharacteristic, putCharacteristicAside, type CharacteristicRefusal } from "#app/services/characteristics.server.ts";
 import type { Route } from "./+types/characteristic.ts";
 import type { PageHandle } from "./signed-in.tsx";
@@ -60,7 +59,7 @@ export async function action({ request, params, context }: Route.ActionArgs) {
   }
   const read = readCharacteristicForm(form);
   if (!read.ok) return mistaken(read);
-  const saved = await inShop(viewer, (tx) => (id ? editCharacteristic(tx, viewer, id, rowVersion.parse(form.get("rowVersion")), read.value) : createCharacteristic(tx, viewer, idParam(params.partId), read.value)));
+  const saved = await inShop(viewer, (tx) => (id ? editCharacteristic(tx, viewer, id, readVersion(form), read.value) : createCharacteristic(tx, viewer, idParam(params.partId), read.value)));
   if (saved.ok) {
     const again = intent === "save-and-add";
     return redirect(again ? href("/parts/:partId/characteristics/new", { partId: saved.partId }) : href("/parts/:partId", { partId: saved.partId }));

@@ -1,4 +1,5 @@
 import { href } from "react-router";
+import { AsideFilter } from "#app/components/aside-filter.tsx";
 import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { LinkButton } from "#app/components/link-button.tsx";
 import { Sheet, SheetHeading } from "#app/components/sheet.tsx";
@@ -45,6 +46,7 @@ export default function CustomersPage({ loaderData }: Route.ComponentProps) {
         rowKey={(row) => row.id}
         rowHref={(row) => href("/customers/:customerId", { customerId: row.id })}
         searchLabel="Find a customer"
+        filters={<AsideFilter />}
         defaultSort="name"
         total={loaderData.total}
         pageSize={loaderData.pageSize}

@@ -1,4 +1,5 @@
 import { href } from "react-router";
+import { AsideFilter } from "#app/components/aside-filter.tsx";
 import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { Day } from "#app/components/day.tsx";
 import { LinkButton } from "#app/components/link-button.tsx";
@@ -46,6 +47,7 @@ export default function JobsPage({ loaderData }: Route.ComponentProps) {
         rowKey={(row) => row.id}
         rowHref={(row) => href("/jobs/:jobId", { jobId: row.id })}
         searchLabel="Find a job"
+        filters={<AsideFilter />}
         defaultSort="due"
         total={total}
         pageSize={loaderData.pageSize}

@@ -7,9 +7,9 @@ import { findJob } from "#app/data/jobs.server.ts";
 import { findMatingPart, type MatingPartValues } from "#app/data/mating-parts.server.ts";
 import { idParam, inShop, orNotFound } from "#app/data/scope.server.ts";
 import { requireCan } from "#app/http/context.server.ts";
-import { dayOrNull, rowVersion, words, wordsOrNone } from "#app/http/fields.server.ts";
+import { dayOrNull, words, wordsOrNone } from "#app/http/fields.server.ts";
 import { parseForm } from "#app/http/form.server.ts";
-import { mistaken, overtaken } from "#app/http/refusals.server.ts";
+import { mistaken, overtaken, readVersion } from "#app/http/refusals.server.ts";
 import { editMatingPart, putMatingPartAside, takeInMatingPart } from "#app/services/mating-parts.server.ts";
 import type { Route } from "./+types/mating-part-edit.ts";
 import type { PageHandle } from "./signed-in.tsx";
@@ -56,7 +56,7 @@ export async function action({ request, params, context }: Route.ActionArgs) {
     const matingPartId = await inShop(viewer, (tx) => takeInMatingPart(tx, viewer, jobId, form.value));
     return redirect(href("/mating-parts/:matingPartId", { matingPartId }));
   }
-  const saved = await inShop(viewer, (tx) => editMatingPart(tx, viewer, id, rowVersion.parse(formData.get("rowVersion")), form.value));
+  const saved = await inShop(viewer, (tx) => editMatingPart(tx, viewer, id, readVersion(formData), form.value));
   if (saved.ok) return redirect(href("/mating-parts/:matingPartId", { matingPartId: id }));
   return overtaken(formData, { labels, yours: entryTexts(form.value), theirs: entryTexts(saved.current), rowVersion: saved.current.rowVersion });
 }
