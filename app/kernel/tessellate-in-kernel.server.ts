@@ -1,7 +1,7 @@
 import type { TopoDS_Shape } from "replicad-opencascadejs";
 import { findBores } from "#app/geometry/bores.ts";
 import type { FaceRecord } from "#app/geometry/face-record.ts";
-import { UnreadableModel } from "#app/geometry/measure-document.ts";
+import { UnreadableModel, type Vec3 } from "#app/geometry/measure-document.ts";
 import { dot } from "#app/geometry/vec3.ts";
 import { faceRecords } from "./face-records.server.ts";
 import type { TessellatedFace, TessellationIndex } from "./kernel-protocol.ts";
@@ -10,6 +10,8 @@ import { readStep } from "./read-step.server.ts";
 
 /** Between neighbouring facets, in radians: keeps small fillets round where the chord alone would not. */
 const FACET_ANGLE = 0.35;
+/** Cosine of 2°: faces that meet at less look like one; drawing practice, no source. */
+const SMOOTH = Math.cos(Math.PI / 90);
 /** A part is drawn at least this fine, as a share of its diagonal, however small it is. */
 const COARSEST = 1 / 100;
 
@@ -38,8 +40,8 @@ export function tessellateInKernel(kernel: Kernel, path: string, wanted_mm: numb
   shapes.forEach((shape, index) => {
     onProgress(0.3 + (0.6 * index) / shapes.length, "meshing");
     const hasSurfaces = !triangulated.includes(shape);
-    const mesh = meshOf(kernel, shape, chord_mm, hasSurfaces);
     const own = records.flatMap((record, at) => (record.solid === index ? [{ record, at }] : []));
+    const mesh = meshOf(kernel, shape, chord_mm, hasSurfaces ? smoothEdges(kernel, shape, own.map(({ record }) => record)) : null);
     mesh.groups.forEach(([first, count], at) => {
       const face = own[at];
       if (count > 0 && face) faces.push({ firstIndex: corners + first, indexCount: count, kind: face.record.kind, label: hasSurfaces ? labelOf(face.record, inBore.has(face.at)) : "facets" });
@@ -71,8 +73,34 @@ function diagonalOf(kernel: Kernel, shapes: TopoDS_Shape[]): number {
   return diagonal > 0 ? diagonal : Infinity;
 }
 
-/** The kernel's arrays are copied: they move whenever its memory grows. */
-function meshOf(kernel: Kernel, shape: TopoDS_Shape, chord_mm: number, hasCurves: boolean) {
+/**
+ * Edges along which nothing bends: the seam of a round face, the line where a fillet runs into its
+ * face. A drawing leaves them out.
+ */
+function smoothEdges(kernel: Kernel, shape: TopoDS_Shape, records: FaceRecord[]): Set<number> {
+  const { TopAbs_FACE, TopAbs_EDGE } = kernel.TopAbs_ShapeEnum;
+  const normalsOf = new Map<number, Vec3[]>();
+  partsOf(kernel, shape, TopAbs_FACE).forEach((face, at) => {
+    const sides = records[at]?.sides ?? [];
+    const edges = partsOf(kernel, face, TopAbs_EDGE).filter((edge) => !kernel.BRep_Tool.Degenerated(kernel.TopoDS.Edge(edge)));
+    sides.forEach(({ normal }, side) => {
+      const hash = edgeHash(kernel, edges[side]!);
+      normalsOf.set(hash, [...(normalsOf.get(hash) ?? []), normal]);
+    });
+  });
+  // Two edges of one hash are taken for smooth only if both are.
+  const isSmooth = ([first, ...others]: Vec3[]) => others.length > 0 && others.every((other) => dot(first!, other) > SMOOTH);
+  return new Set([...normalsOf].flatMap(([hash, normals]) => (isSmooth(normals) ? [hash] : [])));
+}
+
+const edgeHash = (kernel: Kernel, edge: TopoDS_Shape) => kernel.ReplicadShapeHasher.HashCode(edge, 0x7fffffff);
+
+/**
+ * The kernel's arrays are copied: they move whenever its memory grows.
+ *
+ * @param leftOut edges that are not drawn; null where there are only triangles and no curves
+ */
+function meshOf(kernel: Kernel, shape: TopoDS_Shape, chord_mm: number, leftOut: Set<number> | null) {
   const mesh = kernel.ReplicadMeshExtractor.extract(shape, chord_mm, FACET_ANGLE, false);
   const floats = (pointer: number, size: number) => new Float32Array(kernel.wasmMemory.buffer, pointer, size).slice();
   const groups = new Int32Array(kernel.wasmMemory.buffer, mesh.getFaceGroupsPtr(), mesh.getFaceGroupsSize()).slice();
@@ -83,12 +111,12 @@ function meshOf(kernel: Kernel, shape: TopoDS_Shape, chord_mm: number, hasCurves
     groups: faceGroups(kernel, shape, groups),
   };
   mesh.delete();
-  if (!hasCurves) return { ...copied, edges: new Float32Array(0) };
+  if (!leftOut) return { ...copied, edges: new Float32Array(0) };
   const lines = kernel.ReplicadEdgeMeshExtractor.extract(shape, chord_mm, FACET_ANGLE);
   const points = floats(lines.getLinesPtr(), lines.getLinesSize());
   const polylines = new Int32Array(kernel.wasmMemory.buffer, lines.getEdgeGroupsPtr(), lines.getEdgeGroupsSize()).slice();
   lines.delete();
-  return { ...copied, edges: segments(points, polylines) };
+  return { ...copied, edges: segments(points, polylines, leftOut) };
 }
 
 /** First index and count of each face's triangles, in the order of the shape's faces; 0 of a face that could not be meshed. */
@@ -104,11 +132,12 @@ function faceGroups(kernel: Kernel, shape: TopoDS_Shape, groups: Int32Array): [f
   });
 }
 
-/** Polylines as pairs of points. */
-function segments(points: Float32Array, polylines: Int32Array): Float32Array {
+/** Polylines, each as first, count, hash of its edge, as pairs of points. */
+function segments(points: Float32Array, polylines: Int32Array, leftOut: Set<number>): Float32Array {
   const pairs: number[] = [];
   for (let i = 0; i < polylines.length; i += 3) {
-    const [first, count] = [polylines[i]!, polylines[i + 1]!];
+    const [first, count, hash] = [polylines[i]!, polylines[i + 1]!, polylines[i + 2]!];
+    if (leftOut.has(hash)) continue;
     for (let at = first; at < first + count - 1; at++) for (let n = at * 3; n < at * 3 + 6; n++) pairs.push(points[n]!);
   }
   return new Float32Array(pairs);

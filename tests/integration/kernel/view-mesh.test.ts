@@ -58,7 +58,12 @@ describe("from STEP", () => {
       expect(Math.hypot(mesh.positions[vertex * 3]! - 25.4, mesh.positions[vertex * 3 + 1]! - 12.7)).toBeCloseTo(6.35, 4);
     }
     expect(mesh.edges.length % 6).toBe(0);
-    expect(mesh.edges.length).toBeGreaterThan(0);
+    // Twelve edges of the block and the two rims of the bore; its seam is no edge of the part.
+    const along = (i: number) => [0, 1, 2].filter((axis) => Math.abs(mesh.edges[i + axis]! - mesh.edges[i + 3 + axis]!) > 1e-4);
+    const straight = Array.from({ length: mesh.edges.length / 6 }, (_, n) => n * 6).filter((i) => along(i).length === 1);
+    const onBore = straight.filter((i) => Math.hypot(mesh.edges[i]! - 25.4, mesh.edges[i + 1]! - 12.7) < 6.5 && along(i)[0] === 2);
+    expect(straight.length).toBeGreaterThanOrEqual(12);
+    expect(onBore).toEqual([]);
   });
 
   test.each(["step/cube_hole.step", "step/nist_ctc_01_asme1_ap242-e1.stp", "step/as1-tu-203.stp"])("%s: volume and bounds of what is drawn", async (file) => {
