@@ -23,6 +23,7 @@ export function FitResult({ result }: { result: FitResultView }) {
   const { characteristic, readingsMm, answers, judgement } = result;
   const verdict = verdictWords(characteristic, judgement, units);
   const limits = printLimitsText(characteristic, units);
+  const digits = finest([...readingsMm, judgement.limits?.low, judgement.limits?.high]);
   return (
     <section className="border-b border-hairline py-4 first:border-t">
       <div className="flex flex-wrap items-baseline justify-between gap-x-6">
@@ -31,10 +32,10 @@ export function FitResult({ result }: { result: FitResultView }) {
       </div>
       <p className="text-soft">{[characteristic.question, limits, characteristic.method].filter(Boolean).join(", ")}</p>
       {characteristic.kind === "yes-no" ? (
-        <ol className="mt-1 flex flex-wrap gap-x-6">
+        answers.length > 1 && <ol className="mt-1 flex flex-wrap gap-x-6">
           {answers.map((answer, index) => (
             <li key={index}>
-              {answers.length > 1 && <span className="text-soft">Place {index + 1} </span>}
+              <span className="text-soft">Place {index + 1} </span>
               <GateMark state={answer ? "met" : "failed"} word={answer ? "yes" : "no"} />
             </li>
           ))}
@@ -42,7 +43,7 @@ export function FitResult({ result }: { result: FitResultView }) {
       ) : (
         <ol className="mt-2 grid gap-x-8 gap-y-3 sm:grid-cols-2 xl:grid-cols-3">
           {readingsMm.map((mm, index) => (
-            <Reading key={index} characteristic={characteristic} mm={mm} place={readingsMm.length > 1 ? index + 1 : null} judgement={judgement} />
+            <Reading key={index} characteristic={characteristic} mm={mm} digits={digits} place={readingsMm.length > 1 ? index + 1 : null} judgement={judgement} />
           ))}
         </ol>
       )}
@@ -81,7 +82,12 @@ export function FitResult({ result }: { result: FitResultView }) {
   );
 }
 
-function Reading({ characteristic, mm, place, judgement }: { characteristic: TriedCharacteristic; mm: number; place: number | null; judgement: Judgement }) {
+/** Decimals of the finest of these, so that what is compared is written alike and nothing is rounded away. */
+function finest(values: Array<number | null | undefined>): number {
+  return Math.max(...values.map((value) => String(Number((value ?? 0).toFixed(6))).split(".")[1]?.length ?? 0));
+}
+
+function Reading({ characteristic, mm, digits, place, judgement }: { characteristic: TriedCharacteristic; mm: number; digits: number; place: number | null; judgement: Judgement }) {
   const units = useUnits();
   const { mark, words }: { mark: FitMark; words: string } = placeWords(characteristic, mm, units);
   return (
@@ -90,7 +96,7 @@ function Reading({ characteristic, mm, place, judgement }: { characteristic: Tri
         <span>
           {place !== null && <span className="text-soft">Place {place} </span>}
           <b className="text-xl">
-            <Length mm={mm} />
+            <Length mm={mm} digits={digits} />
           </b>
         </span>
         <span className={mark === "failed" ? "font-semibold text-failed" : "text-soft"}>{words}</span>

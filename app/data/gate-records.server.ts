@@ -195,6 +195,7 @@ async function loadCarryOvers(tx: Tx, revisionId: string) {
     .joinRaw(
       `left join lateral (
          select fr.readings_mm, fr.answers, fr.fit_check_id, fc.mating_part_id from fit_results fr join fit_checks fc on fc.id = fr.fit_check_id
+           join prints p on p.id = fc.print_id and p.spoiled is null
          where fr.revision_id = c.from_revision_id and fr.characteristic_id = c.characteristic_id order by fc.at desc, fc.id limit 1) found on true`,
     )
     .select("found.*");

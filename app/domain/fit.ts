@@ -81,12 +81,12 @@ export function verdictWords(characteristic: TriedCharacteristic, judgement: Jud
   if (judgement.verdict === "fails") {
     if (yesNo) return { mark, words: "answered no" };
     const failing = judgement.places.filter(({ verdict }) => verdict === "fails").length;
-    return { mark, words: `fails by ${amountText(judgement.outBy, unit)}${characteristic.places > 1 ? ` at ${failing} of ${characteristic.places} places` : ""}` };
+    return { mark, words: `fails by ${amountText(judgement.outBy, unit)}${characteristic.places > 1 ? ` at ${inLetters(failing)} of ${inLetters(characteristic.places)} places` : ""}` };
   }
-  if (judgement.verdict === "conforms") return { mark, words: yesNo ? "answered yes" : characteristic.places > 1 ? `inside at all ${characteristic.places} places` : "inside" };
+  if (judgement.verdict === "conforms") return { mark, words: yesNo ? "answered yes" : characteristic.places > 1 ? characteristic.places === 2 ? "inside at both places" : `inside at all ${inLetters(characteristic.places)} places` : "inside" };
   if (judgement.places.length === 0) return { mark, words: "not tried" };
   if (judgement.limits === null && !yesNo) return { mark, words: "no print limits to judge by" };
-  return { mark, words: judgement.placesMissing === 1 ? "one place to go" : `${judgement.placesMissing} places to go` };
+  return { mark, words: judgement.placesMissing === 1 ? "one place to go" : `${inLetters(judgement.placesMissing)} places to go` };
 }
 
 /** "62.15 to 62.20 mm on the print", in the unit asked for, as fine as the limits are stated. */
@@ -100,15 +100,19 @@ export function printLimitsText(characteristic: TriedCharacteristic, unit: Lengt
   return `${first} to ${second} ${unit} on the print`;
 }
 
+const figures = ["no", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine", "ten", "eleven", "twelve"];
+const inLetters = (count: number) => figures[count] ?? String(count);
+const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
+
 /** One sentence over all that was tried. */
 export function fitSentence(verdicts: readonly Judgement["verdict"][]): { mark: FitMark; sentence: string } {
   const failed = verdicts.filter((verdict) => verdict === "fails").length;
   const inside = verdicts.filter((verdict) => verdict === "conforms").length;
   const open = verdicts.length - failed - inside;
   if (verdicts.length === 0) return { mark: "open", sentence: "Nothing was tried" };
-  if (failed > 0) return { mark: "failed", sentence: verdicts.length === 1 ? "It does not fit" : `${failed} of ${verdicts.length} ${failed === 1 ? "does" : "do"} not fit` };
-  if (open > 0) return { mark: "open", sentence: inside === 0 ? "Nothing is decided yet" : `${inside} of ${verdicts.length} fit, ${open} ${open === 1 ? "is" : "are"} open` };
-  return { mark: "met", sentence: verdicts.length === 1 ? "It fits" : `It fits: all ${verdicts.length} inside` };
+  if (failed > 0) return { mark: "failed", sentence: verdicts.length === 1 ? "It does not fit" : capital(`${inLetters(failed)} of ${inLetters(verdicts.length)} ${failed === 1 ? "does" : "do"} not fit`) };
+  if (open > 0) return { mark: "open", sentence: inside === 0 ? "Nothing is decided yet" : capital(`${inLetters(inside)} of ${inLetters(verdicts.length)} fit, ${inLetters(open)} ${open === 1 ? "is" : "are"} open`) };
+  return { mark: "met", sentence: verdicts.length === 1 ? "It fits" : verdicts.length === 2 ? "It fits: both are inside" : `It fits: all ${inLetters(verdicts.length)} are inside` };
 }
 
 export const causeWords = { design: "the design", print: "the print", misread: "a wrong reading of the mating part" } as const;
@@ -126,14 +130,17 @@ export interface TrustedInstrument {
  * "± 0.01 mm, checked on the ring today"; a calibration that ran out says so.
  *
  * @param today yyyy-mm-dd
+ * @param sayDay how a day of that form is said
  */
-export function trustWords(instrument: TrustedInstrument, unit: LengthUnit, today: string): string {
+export function trustWords(instrument: TrustedInstrument, unit: LengthUnit, today: string, sayDay: (day: string) => string): string {
   const u = `± ${amountText(instrument.uncertaintyMm, unit)} ${unit}`;
-  switch (instrument.trust) {
+  const { trust, calibratedUntil, checkedOn, checkedWith } = instrument;
+  switch (trust) {
     case "calibrated":
-      return `${u}, ${instrument.calibratedUntil !== null && instrument.calibratedUntil < today ? `calibration ran out on ${instrument.calibratedUntil}` : `calibrated until ${instrument.calibratedUntil ?? ""}`.trim()}`;
+      if (calibratedUntil === null) return `${u}, calibrated`;
+      return `${u}, ${calibratedUntil < today ? "calibration ran out on" : "calibrated until"} ${sayDay(calibratedUntil)}`;
     case "checked":
-      return `${u}, checked${instrument.checkedWith ? ` on ${instrument.checkedWith}` : ""} ${instrument.checkedOn === today ? "today" : `on ${instrument.checkedOn ?? ""}`.trim()}`;
+      return `${u}, checked${checkedWith ? ` on the ${checkedWith}` : ""}${checkedOn === null ? "" : checkedOn === today ? " today" : `, ${sayDay(checkedOn)}`}`;
     case "unverified":
       return `${u}, unverified`;
   }

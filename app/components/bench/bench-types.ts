@@ -1,3 +1,4 @@
+import { dayText } from "#app/components/day.tsx";
 import type { DraftEntry, FitDraft } from "#app/domain/fit-draft.ts";
 import type { TriedCharacteristic, TrustedInstrument } from "#app/domain/fit.ts";
 import type { UploadLimits } from "#app/domain/uploads.ts";
@@ -48,3 +49,5 @@ const placeNames = ["first", "second", "third", "fourth", "fifth", "sixth", "sev
 export const placeName = (place: number) => placeNames[place] ?? `place ${place + 1}`;
 const countNames = ["", "one place", "two places", "three places", "four places", "five places", "six places", "seven places", "eight places", "nine places", "ten places"];
 export const placesText = (places: number) => countNames[places] ?? `${places} places`;
+
+export const sayDay = (day: string) => dayText({ at: day });

@@ -1,7 +1,7 @@
 import { useCallback, useEffect, useState } from "react";
 import { href, useNavigate } from "react-router";
 import { BenchHead } from "#app/components/bench/bench-head.tsx";
-import { triedOn, withEntry, type BenchProps } from "#app/components/bench/bench-types.ts";
+import { sayDay, triedOn, withEntry, type BenchProps } from "#app/components/bench/bench-types.ts";
 import { CharacteristicStep } from "#app/components/bench/characteristic-step.tsx";
 import { forgetDraft, readDraft } from "#app/components/bench/draft-store.ts";
 import { FinishStep } from "#app/components/bench/finish-step.tsx";
@@ -100,7 +100,7 @@ export function Bench(props: BenchProps) {
               setAsked(true);
               change((one) => withEntry({ ...one, instrumentId: id }, characteristic.id, (was) => ({ ...was, instrumentId: id }), emptyEntry));
             }}
-            rows={[...instruments.map((one) => ({ id: one.id, label: one.name, detail: trustWords(one, draft.unit, today) })), { id: null, label: "None is named", detail: "The readings count, their uncertainty is not known" }]}
+            rows={[...instruments.map((one) => ({ id: one.id, label: one.name, detail: trustWords(one, draft.unit, today, sayDay) })), { id: null, label: "None is named", detail: "The readings count, their uncertainty is not known" }]}
           />
         </div>
       );

@@ -1,5 +1,5 @@
 import { useId, useState, type FormEvent } from "react";
-import { placeName, placesText, withEntry, type BenchCharacteristic, type BenchInstrument, type ChangeDraft } from "#app/components/bench/bench-types.ts";
+import { placeName, placesText, sayDay, withEntry, type BenchCharacteristic, type BenchInstrument, type ChangeDraft } from "#app/components/bench/bench-types.ts";
 import { openCamera, PhotoStrip } from "#app/components/bench/photo-strip.tsx";
 import type { BenchPhotos } from "#app/components/bench/use-bench-photos.ts";
 import { WitnessMark } from "#app/components/bench/witness-mark.tsx";
@@ -128,7 +128,6 @@ function Reading({ characteristic, draft, change, entry, instrument, hasInstrume
             maxLength={20}
             aria-invalid={fault !== null || undefined}
             className="w-full min-w-0 bg-transparent text-reading font-semibold focus:outline-none"
-            placeholder={printPlaceholder(characteristic, unit)}
           />
           <span className="shrink-0 text-soft">{unit}</span>
         </label>
@@ -141,7 +140,7 @@ function Reading({ characteristic, draft, change, entry, instrument, hasInstrume
       )}
       <p className="flex items-center justify-between gap-4 text-soft">
         <span>
-          {instrument ? `${instrument.name}, ${trustWords(instrument, unit, today)}` : "No instrument is named"}
+          {instrument ? `${instrument.name}, ${trustWords(instrument, unit, today, sayDay)}` : "No instrument is named"}
           {coarse && <span className="text-attention">; coarse for this tolerance</span>}
         </span>
         {hasInstruments && (
@@ -185,12 +184,6 @@ function readMm(keyed: Keyed): number {
 /** As keyed, or turned into the unit that is shown. */
 function shownIn(keyed: Keyed, unit: LengthUnit): string {
   return keyed.unit === unit ? keyed.text : numberText(fromMm(readMm(keyed), unit), unit === "mm" ? 3 : 5);
-}
-
-/** Where the point will stand: zeros as fine as the limits. */
-function printPlaceholder({ printLowerMm, printUpperMm }: BenchCharacteristic, unit: LengthUnit): string {
-  const near = printLowerMm ?? printUpperMm;
-  return near === null ? "0" : fromMm(near, unit).toFixed(unit === "mm" ? 2 : 4).replace(/\d/g, "0");
 }
 
 function StepMoves({ onBack, onSkip, limits }: { onBack: () => void; onSkip: () => void; limits?: string | null }) {

@@ -5,7 +5,7 @@ import { PickRows } from "#app/components/bench/pick-rows.tsx";
 import type { BenchPhotos } from "#app/components/bench/use-bench-photos.ts";
 import { GateMark } from "#app/components/gate-marks.tsx";
 import { foundOf, type FitDraft } from "#app/domain/fit-draft.ts";
-import { causeWords, fitSentence, judgeOnPrint, verdictWords } from "#app/domain/fit.ts";
+import { fitSentence, judgeOnPrint, verdictWords } from "#app/domain/fit.ts";
 
 export interface FinishStepProps {
   characteristics: BenchCharacteristic[];
