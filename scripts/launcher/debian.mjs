@@ -8,7 +8,8 @@ export const TEST_PACKAGES = [
   { name: "chromium", shownBy: process.env.CHROMIUM_PATH || "/usr/bin/chromium", use: "browser tests" },
   { name: "poppler-utils", shownBy: "/usr/bin/pdftotext", use: "reading the release sheet" },
   { name: "admesh", shownBy: "/usr/bin/admesh", use: "a second opinion on STL files" },
-  { name: "rclone", "unzip", shownBy: "/usr/bin/rclone", use: "a foreign client of the object store" },
+  { name: "unzip", shownBy: "/usr/bin/unzip", use: "opening a packet as a machine shop does" },
+  { name: "rclone", shownBy: "/usr/bin/rclone", use: "a foreign client of the object store" },
   { name: "s3cmd", shownBy: "/usr/bin/s3cmd", use: "a foreign client of the object store" },
 ];
 
