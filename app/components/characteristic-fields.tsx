@@ -118,7 +118,7 @@ function FinalSizes({ entry }: { entry: CharacteristicEntry | null }) {
   };
   return (
     <div onInput={look}>
-      <FieldGroup legend="On the cut part" columns={2}>
+      <FieldGroup legend="On the cut part" columns={3}>
         <div className={shownFor.nominal}>
           <LengthField name="nominalMm" label={labels.nominalMm} optional defaultMm={entry?.nominalMm} />
         </div>

@@ -71,12 +71,11 @@ export interface CharacteristicTableProps {
   rows: CharacteristicView[];
   /** The viewer may change them and put them in order. */
   mayWrite: boolean;
-  csvHref: string;
   empty: DataTableProps<CharacteristicView>["empty"];
 }
 
 /** Characteristics in the order in which they are tried, print limits beside final limits. */
-export function CharacteristicTable({ rows, mayWrite, csvHref, empty }: CharacteristicTableProps) {
+export function CharacteristicTable({ rows, mayWrite, empty }: CharacteristicTableProps) {
   const ordered = rows.filter(({ setAside }) => !setAside);
   const order: Column<CharacteristicView> = {
     key: "order",
@@ -99,7 +98,6 @@ export function CharacteristicTable({ rows, mayWrite, csvHref, empty }: Characte
       rows={rows}
       rowKey={(row) => row.id}
       rowHref={mayWrite ? (row) => href("/characteristics/:characteristicId", { characteristicId: row.id }) : undefined}
-      csvHref={rows.length > 0 ? csvHref : undefined}
       empty={empty}
     />
   );

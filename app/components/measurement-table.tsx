@@ -34,7 +34,7 @@ const columns: Column<MeasurementView>[] = [
 ];
 
 /** What was measured, newest last; a wrong reading stays, struck through. */
-export function MeasurementTable({ rows, mayWrite, csvHref }: { rows: MeasurementView[]; mayWrite: boolean; csvHref: string }) {
+export function MeasurementTable({ rows, mayWrite }: { rows: MeasurementView[]; mayWrite: boolean }) {
   const aside: Column<MeasurementView> = {
     key: "aside",
     label: "If wrong",
@@ -55,7 +55,6 @@ export function MeasurementTable({ rows, mayWrite, csvHref }: { rows: Measuremen
       columns={mayWrite ? [...columns, aside] : columns}
       rows={rows}
       rowKey={(row) => row.id}
-      csvHref={rows.length > 0 ? csvHref : undefined}
       empty={{ text: "Nothing was measured yet." }}
     />
   );

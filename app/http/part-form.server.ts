@@ -18,7 +18,7 @@ const partForm = z.object({
   lifting: ticked,
 });
 
-const hazard = z.enum(["", "none", "pressure", "burst"], { error: "Pick one of the list" });
+const hazard = z.enum(["no", "none", "pressure", "burst"], { error: "Pick one of the list" });
 
 /** Fields `line-…` and `calculation-…` say what the gate asks of the part. */
 export function readPartForm(form: FormData, calculationKinds: readonly string[]): ParsedForm<PartValues> {
@@ -32,8 +32,8 @@ export function readPartForm(form: FormData, calculationKinds: readonly string[]
       number: partNumber, name, kit, materialId, quantity, speedRpm, pressureMPa, temperatureC, fluid, lifting,
       requiredLines: gateLines.filter((line) => alwaysRequiredLines.includes(line) || form.get(`line-${line}`)),
       requiredCalculations: calculationKinds.flatMap((kind) => {
-        const chosen = hazard.parse(form.get(`calculation-${kind}`) ?? "");
-        return chosen === "" ? [] : [{ kind, hazard: chosen }];
+        const chosen = hazard.parse(form.get(`calculation-${kind}`) ?? "no");
+        return chosen === "no" ? [] : [{ kind, hazard: chosen }];
       }),
     },
   };

@@ -127,7 +127,7 @@ export default function DepositPage({ loaderData, actionData }: Route.ComponentP
                 <TextArea name="reason" label={labels.reason} rows={2} defaultValue={agreement.reason} wide />
               </div>
             </FieldGroup>
-            <SubmitButton>Save</SubmitButton>
+            <SubmitButton weight="secondary">Save</SubmitButton>
           </EntryForm>
         </Section>
         <Section title="Payments" ruled lead={`Paid so far: ${loaderData.paid}.`}>

@@ -1,4 +1,5 @@
 import { href, Link } from "react-router";
+import { CsvLink } from "#app/components/csv-link.tsx";
 import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { Day } from "#app/components/day.tsx";
 import { Facts } from "#app/components/facts.tsx";
@@ -101,8 +102,14 @@ export default function JobPage({ loaderData }: Route.ComponentProps) {
           {job.promise}
         </p>
       )}
-      <Section title="Parts" actions={mayWrite ? <LinkButton to={href("/jobs/:jobId/parts/new", params)} weight="primary">Add a part</LinkButton> : undefined}>
-        <DataTable caption="Parts" captionHidden columns={partColumns} rows={parts} rowKey={(row) => row.id} rowHref={(row) => (row.latestRevisionId ? href("/revisions/:revisionId", { revisionId: row.latestRevisionId }) : href("/parts/:partId", { partId: row.id }))} csvHref={parts.length > 0 ? href("/jobs/:jobId/parts.csv", params) : undefined} empty={{ text: "No part yet. Drop its STEP, or begin from a kit." }} />
+      <Section title="Parts" actions={
+          <span className="flex flex-wrap items-center gap-x-6">
+            {parts.length > 0 && <CsvLink href={href("/jobs/:jobId/parts.csv", params)} what="the parts" />}
+            {mayWrite && <LinkButton to={href("/jobs/:jobId/parts/new", params)} weight="primary">Add a part</LinkButton>}
+          </span>
+        }
+      >
+        <DataTable caption="Parts" captionHidden columns={partColumns} rows={parts} rowKey={(row) => row.id} rowHref={(row) => (row.latestRevisionId ? href("/revisions/:revisionId", { revisionId: row.latestRevisionId }) : href("/parts/:partId", { partId: row.id }))} empty={{ text: "No part yet. Drop its STEP, or begin from a kit." }} />
       </Section>
       {loaderData.seesHardware && (
         <Section title="The customer's hardware" actions={mayWrite ? <LinkButton to={href("/jobs/:jobId/mating-parts/new", params)}>Take in hardware</LinkButton> : undefined}>

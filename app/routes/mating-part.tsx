@@ -1,10 +1,12 @@
 import { data, href, Link, redirect } from "react-router";
 import { z } from "zod";
+import { CsvLink } from "#app/components/csv-link.tsx";
 import { Day } from "#app/components/day.tsx";
 import { Facts } from "#app/components/facts.tsx";
 import { LengthField, SelectField, TextField } from "#app/components/fields.tsx";
 import { EntryForm, FieldGroup, SubmitButton } from "#app/components/form.tsx";
 import { useLive } from "#app/components/live.tsx";
+import { useUnits } from "#app/components/measure.tsx";
 import { MeasurementTable } from "#app/components/measurement-table.tsx";
 import { Notice } from "#app/components/notice.tsx";
 import { PhotoList } from "#app/components/photo-list.tsx";
@@ -78,18 +80,19 @@ const labels = { name: "What was measured", valueMm: "Reading", instrumentId: "W
 export default function MatingPartPage({ loaderData, actionData }: Route.ComponentProps) {
   const { job, matingPart, measurements, instruments, photos, today, mayWrite } = loaderData;
   useLive(job.id);
+  const units = useUnits();
   const params = { matingPartId: matingPart.id };
   return (
     <Sheet rightLabel="Custody" right={<Custody shown={loaderData} />}>
       <SheetHeading title={matingPart.name} lead={matingPart.setAside ? "Set aside: kept for the record." : matingPart.description || undefined} />
-      <Section title="Measured on it" lead="As read, with the instrument's uncertainty of that day. A reading that was wrong is set aside and stays in the record.">
-        <MeasurementTable rows={measurements} mayWrite={mayWrite} csvHref={href("/mating-parts/:matingPartId/measurements.csv", params)} />
+      <Section title="Measured on it" lead="As read, with the instrument's uncertainty of that day. A reading that was wrong is set aside and stays in the record." actions={measurements.length > 0 ? <CsvLink href={href("/mating-parts/:matingPartId/measurements.csv", params)} what="the measurements" /> : undefined}>
+        <MeasurementTable rows={measurements} mayWrite={mayWrite} />
         {mayWrite && (
           <EntryForm errors={actionData?.errors} values={actionData?.values} labels={labels} intent="measure" clearWhenSent className="mt-5 max-w-3xl">
             <FieldGroup columns={2}>
               <TextField name="name" label={labels.name} placeholder="Pilot diameter, at the top" />
               <LengthField name="valueMm" label={labels.valueMm} />
-              <SelectField name="instrumentId" label={labels.instrumentId} optional prompt="no instrument: uncertainty not known" options={instruments.map((one) => ({ value: one.id, label: instrumentLabel(one, today) }))} wide />
+              <SelectField name="instrumentId" label={labels.instrumentId} optional prompt="no instrument: uncertainty not known" options={instruments.map((one) => ({ value: one.id, label: instrumentLabel(one, today, units) }))} wide />
               <TextField name="note" label={labels.note} optional wide />
             </FieldGroup>
             <SubmitButton>Add the measurement</SubmitButton>

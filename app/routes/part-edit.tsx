@@ -84,7 +84,7 @@ function entryTexts(values: PartValues, materialName: (id: string) => string): R
 const labels = { name: "Part", number: "Number", kit: "Kind", materialId: "Stock", quantity: "Pieces", speedRpm: "Speed", pressureMPa: "Pressure", temperatureC: "Temperature", fluid: "Fluid", lifting: "Lifts or carries people or loads" };
 
 const hazardClasses = [
-  { value: "", label: "not required" },
+  { value: "no", label: "not required" },
   { value: "none", label: "required" },
   { value: "pressure", label: "required: it holds pressure" },
   { value: "burst", label: "required: it may burst" },
@@ -121,7 +121,7 @@ export default function PartEditPage({ loaderData, actionData }: Route.Component
           </FieldGroup>
           <FieldGroup legend="Calculations" hint="A failed calculation of something that holds pressure or may burst can be conceded only with a named approval from outside." columns={2}>
             {kinds.map(({ kind, title }) => (
-              <SelectField key={kind} name={`calculation-${kind}`} label={title} optional defaultValue={part.requiredCalculations.find((one) => one.kind === kind)?.hazard ?? ""} options={hazardClasses} />
+              <SelectField key={kind} name={`calculation-${kind}`} label={title} defaultValue={part.requiredCalculations.find((one) => one.kind === kind)?.hazard ?? "no"} options={hazardClasses} />
             ))}
           </FieldGroup>
           <SubmitButton>Save</SubmitButton>

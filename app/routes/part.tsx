@@ -1,5 +1,6 @@
 import { href, Link, redirect } from "react-router";
 import { CharacteristicTable } from "#app/components/characteristic-table.tsx";
+import { CsvLink } from "#app/components/csv-link.tsx";
 import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { Day } from "#app/components/day.tsx";
 import { Facts } from "#app/components/facts.tsx";
@@ -84,12 +85,16 @@ export default function PartPageView({ loaderData }: Route.ComponentProps) {
         <Section
           title="Characteristics"
           lead="In the order in which they are tried. Print limits are not metal limits: a print can't hold what metal can."
-          actions={mayWrite ? <LinkButton to={href("/parts/:partId/characteristics/new", params)}>Add a characteristic</LinkButton> : undefined}
+          actions={
+            <span className="flex flex-wrap items-center gap-x-6">
+              {characteristics.length > 0 && <CsvLink href={href("/parts/:partId/characteristics.csv", params)} what="the characteristics" />}
+              {mayWrite && <LinkButton to={href("/parts/:partId/characteristics/new", params)}>Add a characteristic</LinkButton>}
+            </span>
+          }
         >
           <CharacteristicTable
             rows={characteristics}
             mayWrite={mayWrite}
-            csvHref={href("/parts/:partId/characteristics.csv", params)}
             empty={{ text: "None yet. What must fit, turn, seal or start by hand on the hardware? Each is tried on the print before metal is cut." }}
           />
         </Section>
