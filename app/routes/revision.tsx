@@ -1,9 +1,10 @@
 import { data, href, Link, redirect } from "react-router";
 import { z } from "zod";
+import { DataTable, type Column } from "#app/components/data-table.tsx";
 import { Empty } from "#app/components/empty.tsx";
 import { TextArea, TextField } from "#app/components/fields.tsx";
 import { FieldGroup, type FormFaults, type FormValues } from "#app/components/form.tsx";
-import { GateLines, GateVerdict } from "#app/components/gate-marks.tsx";
+import { GateLines, GateMark, GateVerdict } from "#app/components/gate-marks.tsx";
 import { countWord } from "#app/components/gate-words.ts";
 import { HoleTable } from "#app/components/hole-table.tsx";
 import { Confirm } from "#app/components/confirm.tsx";
@@ -95,10 +96,12 @@ export default function RevisionPage({ loaderData, actionData }: Route.Component
       band={<Band shown={loaderData} />}
       titleBlock={<Block shown={loaderData} />}
     >
-      <h1 className="sr-only">
-        {part.name}, revision {revision.ordinal}
-      </h1>
-      <Model shown={loaderData} />
+      <div className="flex h-full flex-col lg:min-h-[33rem]">
+        <h1 className="sr-only">
+          {part.name}, revision {revision.ordinal}
+        </h1>
+        <Model shown={loaderData} />
+      </div>
     </Sheet>
   );
 }
@@ -159,13 +162,16 @@ function Model({ shown: { part, revision, model, holes, callouts, may } }: Part)
   );
 }
 
-function Band({ shown: { part, model, facts, parent, holes, warnings, may } }: Part) {
+function Band({ shown: { part, model, facts, parent, holes, calculations, warnings, may } }: Part) {
   if (!facts) return <p className="py-2 text-soft">{model && model.state !== "failed" ? "Measures stand here as soon as the model is measured." : "No measures yet."}</p>;
   return (
     <>
       <div className="grid gap-x-10 gap-y-6 xl:grid-cols-[minmax(21rem,1fr)_minmax(0,2fr)]">
         <ModelFactsTable facts={facts} parent={parent} noMass={!part.hasDensity ? "no stock chosen" : "not closed"} />
-        {model?.kind === "step" && <HoleTable holes={holes} instructions={may.instruct} />}
+        <div>
+          {model?.kind === "step" && <HoleTable holes={holes} instructions={may.instruct} />}
+          {calculations.length > 0 && <CalculationTable calculations={calculations} />}
+        </div>
       </div>
       {warnings.map((warning) => (
         <p key={warning} className="border-t border-hairline py-2 text-attention">
@@ -174,6 +180,16 @@ function Band({ shown: { part, model, facts, parent, holes, warnings, may } }: P
       ))}
     </>
   );
+}
+
+const calculationColumns: Column<Shown["calculations"][number]>[] = [
+  { key: "title", label: "Calculation", cell: ({ title }) => title },
+  { key: "verdict", label: "Verdict", cell: ({ verdict }) => (verdict === "information" ? "information" : <GateMark state={verdict === "pass" ? "met" : "failed"} word={verdict === "pass" ? "passes" : "fails"} />) },
+  { key: "room", label: "Room", align: "number", cell: ({ room }) => room ?? "–" },
+];
+
+function CalculationTable({ calculations }: Pick<Shown, "calculations">) {
+  return <DataTable caption="Calculations" captionHidden columns={calculationColumns} rows={calculations} rowKey={({ id }) => id} rowHref={({ id }) => href("/calculations/:calculationId", { calculationId: id })} empty={{ text: "No calculation yet." }} />;
 }
 
 const roleWords: Record<string, string> = { step: "STEP", stl: "STL", drawing: "PDF" };
@@ -228,15 +244,16 @@ function About({ shown: { revision, instructions, may } }: Part) {
 }
 
 /** Where the work on this revision goes on. */
-function Ways({ shown: { revision, gate, may } }: Part) {
+function Ways({ shown: { job, revision, gate, may } }: Part) {
   const params = { revisionId: revision.id };
   const ways = [
     may.upload && { label: "Files", to: href("/revisions/:revisionId/files", params) },
     may.print && !revision.sealed && { label: revision.prints ? `Print it again (${countWord(revision.prints)} so far)` : "Record a print", to: href("/revisions/:revisionId/prints/new", params) },
-    may.calculate && { label: "Calculations", to: href("/revisions/:revisionId/calculations", params) },
+    may.calculate && { label: "Attach a calculation", to: href("/revisions/:revisionId/calculations/new", params) },
     may.instruct && { label: "Instructions", to: href("/revisions/:revisionId/instructions", params) },
     may.makeability && { label: "Makeability", to: href("/revisions/:revisionId/makeability", params) },
-    may.approval && { label: may.write ? "Customer's answer" : "Your answer", to: href("/revisions/:revisionId/approval", params) },
+    may.recordApproval && { label: "Customer's answer", to: href("/revisions/:revisionId/approval", params) },
+    may.giveApproval && { label: "Say whether it is right", to: href("/your-job/:jobId", { jobId: job.id }) },
     may.cautions && { label: "Cautions", to: href("/revisions/:revisionId/cautions", params) },
     gate && { label: revision.sealed ? "Decision and packet" : "To the gate", to: href("/revisions/:revisionId/gate", params) },
   ].filter((way) => way !== false && way !== null);

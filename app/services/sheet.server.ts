@@ -1,4 +1,5 @@
 import { href } from "react-router";
+import { listCalculations, type StoredCalculation } from "#app/data/calculations.server.ts";
 import { listCallouts } from "#app/data/callouts.server.ts";
 import { listRevisionFiles, type ModelFile } from "#app/data/files.server.ts";
 import { findInstructions, listHoleInstructions, type HoleInstruction } from "#app/data/instructions.server.ts";
@@ -43,6 +44,7 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
   const holes = may("instructions:read") ? await listHoleInstructions(tx, revision.id) : [];
   const instructions = may("instructions:read") ? await findInstructions(tx, revision.id) : undefined;
   const callouts = may("callout:read") ? await listCallouts(tx, viewer, { revisionId: revision.id }) : [];
+  const calculations = may("calculation:read") ? await listCalculations(tx, revision.id) : [];
   const recorded = facts.get(revision.id)!;
   return {
     job: { id: job.id, number: job.number, title: job.title },
@@ -70,6 +72,7 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
     warnings: may("model:download") ? (model?.document?.warnings ?? []) : [],
     holes: model?.document ? holeRows(model.document, holes) : [],
     instructions: instructions ? { generalTolerance: instructions.generalTolerance, edgeBreak: instructions.edgeBreak, coating: instructions.coating, confirmedName: instructions.confirmedName } : null,
+    calculations: calculations.map(({ id, title, verdict, result }) => ({ id, title, verdict, room: roomOf(result) })),
     callouts: callouts.map((callout) => ({ id: callout.id, number: callout.number, pointMm: callout.pointMm, body: callout.body, open: callout.closedAt === null })),
     gate: evaluated && may("gate:read") ? { verdict: evaluated.result.verdict, lines: gateViews(viewer, evaluated).map(oneAction), blocked: evaluated.result.blocked.map((missing) => missingView(viewer, evaluated.records, missing)) } : null,
     files: may("model:download") ? files.filter(({ role, state }) => state === "stored" && role !== "photo").map(({ id, role, name }) => ({ id, role, name })) : [],
@@ -77,10 +80,11 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
       write: may("revision:write") && !part.setAside,
       upload: may("file:upload") && revision.sealedAt === null,
       print: may("print:record"),
-      calculate: may("calculation:read"),
+      calculate: may("calculation:write") && revision.sealedAt === null,
       instruct: may("instructions:read"),
       makeability: may("makeability:read"),
-      approval: may("approval:read"),
+      recordApproval: may("approval:record"),
+      giveApproval: may("approval:give"),
       cautions: may("gate:propose"),
       callouts: may("callout:read"),
       seePart: may("part:write"),
@@ -154,6 +158,11 @@ function findModel(files: readonly ModelFile[], viewer: Viewer): FoundModel | nu
     viewReady: file.derived.includes(can(viewer.roles, "model:download") ? "view-mesh" : "customer-mesh"),
     pictured: file.derived.includes("thumbnail"),
   };
+}
+
+function roomOf({ room }: StoredCalculation["result"]): string | null {
+  const { value, unit } = (room ?? {}) as { value?: unknown; unit?: unknown };
+  return typeof value === "number" && typeof unit === "string" ? `${Number(value.toPrecision(3))} ${unit}` : null;
 }
 
 /** Alike holes as one line, with what the machinist is to do with them once that was said. */

@@ -142,7 +142,7 @@ export default function ModelStage(props: ModelStageProps) {
   const amount = distance === null ? "" : `${numberText(lengthIn(distance, units), units === "mm" ? 2 : 4)} ${units}`;
   const size = model?.box;
   return (
-    <div className="flex h-full min-h-0 flex-col lg:sticky lg:top-2 lg:max-h-[calc(100dvh-1rem)]">
+    <div className="flex h-full min-h-0 flex-1 flex-col lg:sticky lg:top-2 lg:max-h-[max(36rem,calc(100dvh-19rem))]">
       <div
         role="application"
         aria-roledescription="view of a model"
@@ -151,7 +151,7 @@ export default function ModelStage(props: ModelStageProps) {
         onKeyDown={press}
         onPointerDown={({ clientX, clientY, isPrimary }) => (pressed.current = isPrimary ? { x: clientX, y: clientY } : null)}
         onPointerUp={release}
-        className="group/stage relative min-h-[20rem] flex-1 lg:min-h-[26rem] touch-none bg-[radial-gradient(closest-side,var(--wash),transparent)] -outline-offset-2"
+        className="group/stage relative min-h-[20rem] flex-1 touch-none bg-[radial-gradient(closest-side,var(--wash),transparent)] -outline-offset-2"
       >
         <div className="absolute inset-0">
           <Canvas orthographic frameloop="demand" flat dpr={[1, 2]} gl={{ antialias: true, stencil: true, alpha: true }} camera={{ up: [0, 0, 1], position: [0, -1, 0] }} onCreated={({ gl }) => {

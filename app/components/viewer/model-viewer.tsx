@@ -86,7 +86,7 @@ export function ModelViewer({ markers = noMarkers, pictureUrl, ...props }: Model
 
 function Instead({ pictureUrl, name, action, children }: { pictureUrl?: string | null; name: string; action?: ReactNode; children: ReactNode }) {
   return (
-    <div className="flex h-full min-h-[20rem] flex-col items-center justify-center gap-4 p-6 text-center">
+    <div className="flex h-full min-h-[20rem] flex-1 flex-col items-center justify-center gap-4 p-6 text-center">
       {pictureUrl && <img src={pictureUrl} alt={name} width={480} height={360} className="h-auto max-w-full" />}
       <p role="status" className="max-w-md text-soft">
         {children}
