@@ -6,8 +6,8 @@ import { parseForm, type LengthUnit, type ParsedForm } from "./form.server.ts";
 export const characteristicKinds = ["limits", "fit", "min", "max", "yes-no"] as const satisfies readonly CharacteristicKind[];
 
 /** A field that this kind does not need: whatever still stands in it is not judged and not kept. */
-const notAsked = z.unknown().transform(() => null);
-const notAskedText = z.unknown().transform(() => "");
+const notAsked = z.unknown().optional().transform(() => null);
+const notAskedText = z.unknown().optional().transform(() => "");
 
 /**
  * The fields of one kind. A size that a print is to prove needs print limits of its own, on the side

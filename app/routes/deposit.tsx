@@ -58,8 +58,8 @@ function sentenceOf(job: Job, currency: string, leftMinor: number | null): strin
 const agreementForm = (currency: string) => (kind: FormDataEntryValue | null) =>
   z.object({
     kind: z.enum(["agreed", "none", "open"], { error: "Say what was agreed" }),
-    amount: kind === "agreed" ? amount(currency, "Give the amount") : z.unknown().transform(() => null),
-    reason: kind === "none" ? words("Say why none is asked", 500) : z.unknown().transform(() => null),
+    amount: kind === "agreed" ? amount(currency, "Give the amount") : z.unknown().optional().transform(() => null),
+    reason: kind === "none" ? words("Say why none is asked", 500) : z.unknown().optional().transform(() => null),
     rowVersion,
   });
 

@@ -33,7 +33,7 @@ export async function loader({ params, context }: Route.LoaderArgs) {
   return { instrument: found && { ...found, words: trustWords(found, today) }, today, owner: can(viewer.roles, "shop:manage") };
 }
 
-const gone = z.unknown().transform(() => null);
+const gone = z.unknown().optional().transform(() => null);
 
 /** Only what the chosen trust rests on is judged and kept. */
 const instrumentForm = (trust: FormDataEntryValue | null) => (units: LengthUnit) =>
@@ -45,7 +45,7 @@ const instrumentForm = (trust: FormDataEntryValue | null) => (units: LengthUnit)
     trust: z.enum(["calibrated", "checked", "unverified"], { error: "Say how it is trusted" }),
     calibratedUntil: trust === "calibrated" ? day("Give the last day of the calibration") : gone,
     checkedOn: trust === "checked" ? day("Give the day of the check") : gone,
-    checkedWith: trust === "checked" ? words("Say on what, such as gauge block 25 mm", 120) : z.unknown().transform(() => ""),
+    checkedWith: trust === "checked" ? words("Say on what, such as gauge block 25 mm", 120) : z.unknown().optional().transform(() => ""),
   });
 
 const checkForm = z.object({ with: words("Say on what, such as gauge block 25 mm", 120) });
