@@ -23,6 +23,8 @@ export interface FitDraft {
   /** Made on the phone: the same draft sent twice is stored once. */
   draftKey: string;
   printId: string;
+  /** What is tried, for who finds the draft elsewhere: "Filler flange, print 4.1". */
+  label: string;
   matingPartId: string | null;
   unit: LengthUnit;
   instrumentId: string | null;
@@ -41,8 +43,8 @@ export interface FitDraft {
   fitCheckId: string | null;
 }
 
-export const newDraft = (draftKey: string, printId: string, unit: LengthUnit): FitDraft => ({
-  version: 1, draftKey, printId, matingPartId: null, unit, instrumentId: null, at: -1, entries: {}, cause: null, remarks: "", finished: false, triedAt: null, attempts: 0, fitCheckId: null,
+export const newDraft = (draftKey: string, printId: string, label: string, unit: LengthUnit): FitDraft => ({
+  version: 1, draftKey, printId, label, matingPartId: null, unit, instrumentId: null, at: -1, entries: {}, cause: null, remarks: "", finished: false, triedAt: null, attempts: 0, fitCheckId: null,
 });
 
 export const emptyEntry: DraftEntry = { readings: [], answers: [], instrumentId: null, bandPosition: null, bandWidth: null };

@@ -58,7 +58,11 @@ export async function action({ request, params, context }: Route.ActionArgs) {
   const viewer = requireCan(context, "callout:write");
   const fileId = idParam(params.fileId);
   const form = parseForm(photoCalloutForm, await request.formData());
-  if (!form.ok) return data({ errors: form.errors, values: form.values }, { status: 400 });
+  if (!form.ok) {
+    // One spot that is missing is one thing to mend.
+    const { y: _, ...errors } = form.errors;
+    return data({ errors: form.errors.x ? errors : form.errors, values: form.values }, { status: 400 });
+  }
   const { x, y, ...input } = form.value;
   const put = await putPhotoCallout(viewer, fileId, { x, y }, input);
   if (put.ok) return redirect(href("/callouts/:calloutId", { calloutId: put.calloutId }));

@@ -1,5 +1,6 @@
 import { data, href, redirect } from "react-router";
 import { z } from "zod";
+import { KeptFitChecks } from "#app/components/bench/kept-fit-checks.tsx";
 import { Confirm } from "#app/components/confirm.tsx";
 import { Day } from "#app/components/day.tsx";
 import { Empty } from "#app/components/empty.tsx";
@@ -45,6 +46,7 @@ export async function loader({ params, context }: Route.LoaderArgs) {
       proves: characteristics.filter(({ id }) => print.proves.includes(id)).map(({ name }) => name),
       checks: await viewFitChecks(tx, place.part.id, await listFitChecksOfPrint(tx, print.id)),
       mayRecord: can(viewer.roles, "print:record") && !place.revision.sealed,
+      personKey: viewer.personId ?? viewer.guestLinkId ?? "",
       mayTry: can(viewer.roles, "fit-check:record") && !place.revision.sealed,
     };
   });
@@ -116,6 +118,7 @@ export default function PrintPage({ loaderData, actionData }: Route.ComponentPro
       }
     >
       <SheetHeading title={`Print ${print.name}, ${print.whole ? "whole" : print.piece}`} lead={place.revision.sealed ? "Its revision was released: nothing here changes any more." : undefined} actions={tryIt || undefined} />
+      <KeptFitChecks personKey={loaderData.personKey} printId={print.id} />
       {print.spoiled && <Notice kind="error">It does not count: {print.spoiled}.</Notice>}
       {!ofThisModel && !print.spoiled && <Notice kind="info">Revision {place.revision.ordinal} has another model by now, so this print proves nothing for it. Print the new model.</Notice>}
       <Section title="Tried on">

@@ -19,7 +19,7 @@ import { judgeOnPrint, markOf, trustWords } from "#app/domain/fit.ts";
 /** The fit check at the bench, phone first: pick what it is tried on, then one characteristic at a time. */
 export function Bench(props: BenchProps) {
   const { personKey, part, print, sealed, characteristics, matingParts, instruments, today } = props;
-  const { draft, kept, change, reload } = useDraft(personKey, print.id, useUnits());
+  const { draft, kept, change, reload } = useDraft(personKey, { id: print.id, label: `${part}, print ${print.name}` }, useUnits());
   const photos = useBenchPhotos(draft?.draftKey ?? null, props.limits);
   const { sending, send, stop } = useSending(personKey, print.id, draft?.finished ?? false);
   const [picking, setPicking] = useState(false);

@@ -33,11 +33,11 @@ export function forgetDraft(personKey: string, printId: string): void {
   allowed(() => localStorage.removeItem(nameOf(personKey, printId)), undefined);
 }
 
-/** Fit checks of this person that were given out of hand and are not sent yet, or whose photos are not. */
-export function listWaitingDrafts(personKey: string): FitDraft[] {
+/** All drafts of this person that lie on this phone, begun or given out of hand. */
+export function listDrafts(personKey: string): FitDraft[] {
   return allowed(() => {
     const names = Array.from({ length: localStorage.length }, (_, index) => localStorage.key(index) ?? "");
-    return names.filter((name) => name.startsWith(prefixOf(personKey))).flatMap((name) => read(name) ?? []).filter(({ finished }) => finished);
+    return names.filter((name) => name.startsWith(prefixOf(personKey))).flatMap((name) => read(name) ?? []);
   }, []);
 }
 

@@ -33,7 +33,7 @@ export function PhotoStrip({ bench, characteristicId, inputId }: PhotoStripProps
           {mine.map((photo, index) => (
             <li key={photo.id} className="flex items-center border border-rule">
               <img src={photo.url} alt={`Photo ${index + 1}`} className="size-11 object-cover" />
-              <button type="button" className="min-h-11 px-3 font-medium text-blue" aria-label={`Take photo ${index + 1} out`} onClick={() => void bench.remove(photo)}>
+              <button type="button" className="min-h-11 scroll-mb-96 px-3 font-medium text-blue" aria-label={`Take photo ${index + 1} out`} onClick={() => void bench.remove(photo)}>
                 Out
               </button>
             </li>

@@ -37,7 +37,7 @@ function BandField({ label, value, unit, onChange }: { label: string; value: Key
           autoComplete="off"
           maxLength={20}
           aria-invalid={(read !== null && !read.ok) || undefined}
-          className="entry-value"
+          className="entry-value scroll-mb-96"
           onChange={(event) => {
             const typed = event.target.value;
             setText(typed);

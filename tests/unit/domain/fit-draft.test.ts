@@ -40,7 +40,7 @@ describe("places", () => {
 
 test("what is sent leaves out what was skipped, and an instrument where nothing was read", () => {
   const draft = {
-    ...newDraft("key", "print", "mm"),
+    ...newDraft("key", "print", "Plate, print 1.1", "mm"),
     matingPartId: "ring",
     triedAt: "2026-11-20T10:00:00.000Z",
     remarks: "binds",
