@@ -120,7 +120,7 @@ function FinalSizes({ entry }: { entry: CharacteristicEntry | null }) {
     <div onInput={look}>
       <FieldGroup legend="On the cut part" columns={3}>
         <div className={shownFor.nominal}>
-          <LengthField name="nominalMm" label={labels.nominalMm} optional defaultMm={entry?.nominalMm} />
+          <LengthField name="nominalMm" label={labels.nominalMm} optional defaultMm={entry?.nominalMm} hint="A fit class needs it." />
         </div>
         <div className={shownFor.fitClass}>
           <TextField name="fitClass" label={labels.fitClass} defaultValue={entry?.fitClass} placeholder="H7" hint={found ? <>ISO 286: <Limits lower={found.lower_mm} upper={found.upper_mm} /></> : "A capital for a hole, a small letter for a shaft (ISO 286)."} />

@@ -53,8 +53,8 @@ function FinalLimits({ row }: { row: CharacteristicView }) {
   return (
     <>
       {row.fitClass && row.nominalMm !== null && (
-        <span className="mr-2 whitespace-nowrap">
-          <Length mm={row.nominalMm} bare /> {row.fitClass}
+        <span className="whitespace-nowrap">
+          <Length mm={row.nominalMm} bare /> {row.fitClass},{" "}
         </span>
       )}
       <Limits lower={row.lowerMm} upper={row.upperMm} />

@@ -211,8 +211,11 @@ export interface ConflictNoticeProps {
 
 /** Somebody saved first: both versions side by side, nothing of yours lost. */
 export function ConflictNotice({ by, changes, children }: ConflictNoticeProps) {
+  const notice = useRef<HTMLDivElement>(null);
+  // It stands above a form that may be longer than the screen.
+  useEffect(() => notice.current?.focus(), [changes]);
   return (
-    <div role="alert" className="mb-5 border-[1.5px] border-attention px-4 py-3">
+    <div ref={notice} role="alert" tabIndex={-1} className="mb-5 border-[1.5px] border-attention px-4 py-3">
       <p className="font-semibold">{by ?? "Somebody"} changed this while you were writing. Nothing was saved yet.</p>
       <p className="text-soft">Your words still stand in the form. Save again to keep them over the other, or change them first.</p>
       <table className="mt-3 w-full text-left">

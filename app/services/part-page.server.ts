@@ -38,7 +38,7 @@ export async function loadPartPage(tx: Tx, viewer: Viewer, partId: string) {
       ],
       service: onlyShared ? null : serviceFacts(part),
       toState: mayWrite ? kit.hazardsToState.filter((hazard) => hazardValue(part, hazard) === null).map((hazard) => hazardWords[hazard]) : [],
-      asks: onlyShared ? null : asksOf(part),
+      asks: can(viewer.roles, "gate:read") ? asksOf(part) : null,
     },
     characteristics: onlyShared
       ? null

@@ -43,7 +43,7 @@ export function UploadPanel({ target, limits, accepts, what, camera = false }: U
         className={`flex flex-wrap items-center justify-between gap-x-6 gap-y-3 border-[1.5px] border-dashed px-4 py-4 ${over ? "border-blue bg-wash" : "border-rule"}`}
       >
         <p className="text-soft">
-          Drop {what} here. A model may have {limits.modelMb} MB, a photo {limits.photoMb} MB.
+          Drop {what} here. {accepts.every((kind) => kind === "photo") ? `A photo may have ${limits.photoMb} MB.` : `A model may have ${limits.modelMb} MB, a photo ${limits.photoMb} MB.`}
         </p>
         <label htmlFor={id} className={`${buttonClass("secondary")} cursor-pointer focus-within:outline-2`}>
           {camera ? "Take or choose a photo" : "Choose files"}
