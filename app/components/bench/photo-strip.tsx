@@ -20,9 +20,7 @@ export function PhotoStrip({ bench, characteristicId, inputId }: PhotoStripProps
         accept="image/jpeg,image/png,image/webp"
         capture="environment"
         multiple
-        className="sr-only"
-        tabIndex={-1}
-        aria-label="Photo from the camera"
+        hidden
         onChange={(event) => {
           void bench.add([...(event.currentTarget.files ?? [])], characteristicId);
           event.currentTarget.value = "";
