@@ -27,7 +27,7 @@ export function FitResult({ result }: { result: FitResultView }) {
   return (
     <section className="border-b border-hairline py-4 first:border-t">
       <div className="flex flex-wrap items-baseline justify-between gap-x-6">
-        <h3 className="text-lg">{characteristic.name}</h3>
+        <h2 className="text-lg">{characteristic.name}</h2>
         <GateMark state={verdict.mark} word={verdict.words} />
       </div>
       <p className="text-soft">{[characteristic.question, limits, characteristic.method].filter(Boolean).join(", ")}</p>
