@@ -29,6 +29,8 @@ export default defineConfig({
   expect: { timeout: 15_000 },
   use: {
     baseURL: process.env.BASE_URL,
+    // A button that is not there fails its step, not the whole test's time.
+    actionTimeout: 20_000,
     trace: "retain-on-failure",
     screenshot: "only-on-failure",
     launchOptions: {

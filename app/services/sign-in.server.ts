@@ -6,7 +6,7 @@ import { writeLog } from "#app/data/logbook.server.ts";
 import { housekeeper } from "#app/domain/viewer.ts";
 import { env } from "#app/env.server.ts";
 import { queueMail } from "./mail.server.ts";
-import { allow } from "./rate-limit.server.ts";
+import { allow, countFailure, mayTry } from "./rate-limit.server.ts";
 import { hashToken, newToken, passwordMatches } from "./secrets.server.ts";
 
 const days = 24 * 60 * 60 * 1000;
@@ -20,11 +20,16 @@ export type SignInResult = { ok: true; token: string; expiresAt: Date } | { ok: 
 
 /** Signs in by password. Ten failures in a quarter of an hour, by account or by address, close the door for a while. */
 export async function signInWithPassword(input: { email: string; password: string; address: string; userAgent: string }): Promise<SignInResult> {
-  const allowed = (await allow("sign-in", `account:${input.email.trim().toLowerCase()}`)) && (await allow("sign-in", `address:${input.address}`));
+  const account = `account:${input.email.trim().toLowerCase()}`;
+  const allowed = (await mayTry("sign-in", account)) && (await mayTry("sign-in-address", input.address));
   if (!allowed) return { ok: false, reason: "too-many" };
   const person = await outsideShops((tx) => findPersonByEmail(tx, input.email));
   const matches = await passwordMatches(person && !person.disabled ? person.passwordHash : null, input.password);
-  if (!person || !matches) return { ok: false, reason: "wrong" };
+  if (!person || !matches) {
+    await countFailure("sign-in", account);
+    await countFailure("sign-in-address", input.address);
+    return { ok: false, reason: "wrong" };
+  }
   return startSession(person, input.userAgent, "password");
 }
 
@@ -81,13 +86,15 @@ export async function signInWithLink(token: string, userAgent: string): Promise<
 
 /** Proves again who is at the keyboard, before a signature. */
 export async function proveWithPassword(input: { personId: string; sessionId: string; password: string }): Promise<{ ok: true } | { ok: false; reason: SignInRefusal }> {
-  if (!(await allow("sign-in", `prove:${input.personId}`))) return { ok: false, reason: "too-many" };
-  return outsideShops(async (tx) => {
-    const person = await findPerson(tx, input.personId);
-    if (!person || !(await passwordMatches(person.passwordHash, input.password))) return { ok: false, reason: "wrong" };
-    await proveSession(tx, input.sessionId, "password");
-    return { ok: true };
-  });
+  const key = `prove:${input.personId}`;
+  if (!(await mayTry("sign-in", key))) return { ok: false, reason: "too-many" };
+  const person = await outsideShops((tx) => findPerson(tx, input.personId));
+  if (!person || !(await passwordMatches(person.passwordHash, input.password))) {
+    await countFailure("sign-in", key);
+    return { ok: false, reason: "wrong" };
+  }
+  await outsideShops((tx) => proveSession(tx, input.sessionId, "password"));
+  return { ok: true };
 }
 
 /** Mails a link that proves who is at the keyboard of this session. */
