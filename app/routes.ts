@@ -6,6 +6,8 @@ export default [
   route("sign-in/link/:token", "routes/sign-in-link.tsx"),
   route("prove", "routes/prove.tsx"),
   route("prove/link/:token", "routes/prove-link.tsx"),
+  route("account", "routes/account.tsx"),
+  route("shops", "routes/shops.tsx"),
   route("g/:token", "routes/guest-link.tsx"),
   route("sign-out", "routes/sign-out.tsx"),
   route("preferences", "routes/preferences.tsx"),
@@ -79,6 +81,8 @@ export default [
     route("shop/questions/:questionId", "routes/shop-question.tsx"),
     route("shop/settings", "routes/shop-settings.tsx"),
 
+    route("logbook", "routes/logbook.tsx"),
+
     // Customers
     route("customers", "routes/customers.tsx"),
     route("customers/new", "routes/customer.tsx", { id: "customer-new" }),
@@ -93,6 +97,7 @@ export default [
   route("files/:fileId/:kind", "routes/file-derived.ts"),
 
   // Tables as files
+  route("logbook.csv", "routes/logbook-csv.ts"),
   route("customers.csv", "routes/customers-csv.ts"),
   route("jobs.csv", "routes/jobs-csv.ts"),
   route("jobs/:jobId/parts.csv", "routes/parts-csv.ts"),
