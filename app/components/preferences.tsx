@@ -39,7 +39,7 @@ interface ChoiceProps {
 function Choice({ name, legend, options, current }: ChoiceProps) {
   const { pathname, search } = useLocation();
   return (
-    <Form method="post" action="/preferences" preventScrollReset className="flex items-center gap-x-1" role="group" aria-label={legend}>
+    <Form method="post" action="/preferences" preventScrollReset className="flex items-center gap-x-1" aria-label={legend}>
       <input type="hidden" name="returnTo" value={pathname + search} />
       <span className="pr-1">{legend}</span>
       {options.map(({ value, label }) => (

@@ -74,7 +74,8 @@ export async function loadSheet(tx: Tx, viewer: Viewer, revisionId: string) {
     instructions: instructions ? { generalTolerance: instructions.generalTolerance, edgeBreak: instructions.edgeBreak, coating: instructions.coating, confirmedName: instructions.confirmedName } : null,
     calculations: calculations.map(({ id, title, verdict, result }) => ({ id, title, verdict, room: roomOf(result) })),
     callouts: callouts.map((callout) => ({ id: callout.id, number: callout.number, pointMm: callout.pointMm, body: callout.body, open: callout.closedAt === null })),
-    gate: evaluated && may("gate:read") ? { verdict: evaluated.result.verdict, lines: gateViews(viewer, evaluated).map(oneAction), blocked: evaluated.result.blocked.map((missing) => missingView(viewer, evaluated.records, missing)) } : null,
+    // That it is set aside the sheet says itself, with the way to take it up again.
+    gate: evaluated && may("gate:read") ? { verdict: evaluated.result.verdict, lines: gateViews(viewer, evaluated).map(oneAction), blocked: evaluated.result.blocked.filter(({ action }) => action !== "take-up-again").map((missing) => missingView(viewer, evaluated.records, missing)) } : null,
     files: may("model:download") ? files.filter(({ role, state }) => state === "stored" && role !== "photo").map(({ id, role, name }) => ({ id, role, name })) : [],
     may: {
       write: may("revision:write") && !part.setAside,

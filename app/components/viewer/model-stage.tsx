@@ -142,7 +142,7 @@ export default function ModelStage(props: ModelStageProps) {
   const amount = distance === null ? "" : `${numberText(lengthIn(distance, units), units === "mm" ? 2 : 4)} ${units}`;
   const size = model?.box;
   return (
-    <div className="flex h-full min-h-0 flex-1 flex-col lg:sticky lg:top-2 lg:max-h-[max(36rem,calc(100dvh-19rem))]">
+    <div className="flex h-full min-h-0 flex-1 flex-col lg:sticky lg:top-2 lg:max-h-[max(36rem,calc(100dvh-11rem))]">
       <div
         role="application"
         aria-roledescription="view of a model"
@@ -183,7 +183,7 @@ export default function ModelStage(props: ModelStageProps) {
           </div>
         )}
       </div>
-      <div className="px-4 pb-2 sm:px-5">
+      <div className="sticky bottom-0 bg-sheet px-4 pb-2 sm:px-5">
         <p role="status" className="min-h-6 text-[0.9375rem]">
           <Said tool={tool} picked={picked} measured={measured} amount={amount} error_mm={model?.error_mm ?? 0} closed={closed} placed={placed !== null} />
         </p>
