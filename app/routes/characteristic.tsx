@@ -3,7 +3,7 @@ import { CharacteristicFields, characteristicLabels } from "#app/components/char
 import { ConflictNotice, EntryForm, RowVersion, SubmitButton } from "#app/components/form.tsx";
 import { lengthEntry } from "#app/components/measure-text.ts";
 import { Sheet, SheetHeading } from "#app/components/sheet.tsx";
-import { findCharacteristic, type CharacteristicValues } from "#app/data/characteristics.server.ts";
+import { findCharacteristic, listCharacteristics, type CharacteristicValues } from "#app/data/characteristics.server.ts";
 import { findJob } from "#app/data/jobs.server.ts";
 import { listMatingParts } from "#app/data/mating-parts.server.ts";
 import { findPart } from "#app/data/parts.server.ts";
@@ -38,6 +38,8 @@ export async function loader({ params, context }: Route.LoaderArgs) {
       part: { id: part.id, name: part.name },
       characteristic,
       matingParts: matingParts.map(({ id, name }) => ({ value: id, label: name })),
+      // "Add it, then another" comes back to this address: another count is another, empty form.
+      count: (await listCharacteristics(tx, part.id, { withSetAside: true })).length,
     };
   });
 }
@@ -92,7 +94,7 @@ export default function CharacteristicPage({ loaderData, actionData }: Route.Com
       <SheetHeading title={characteristic ? characteristic.name : `What must hold on ${part.name}?`} lead={characteristic?.setAside ? "Set aside: kept for the results it has, asked no more." : undefined} />
       <div className="max-w-3xl">
         {actionData?.conflict && <ConflictNotice changes={actionData.conflict} />}
-        <EntryForm errors={actionData?.errors} values={actionData?.values} labels={characteristicLabels}>
+        <EntryForm key={loaderData.count} errors={actionData?.errors} values={actionData?.values} labels={characteristicLabels}>
           {characteristic && <RowVersion value={actionData?.rowVersion ?? characteristic.rowVersion} />}
           <CharacteristicFields entry={characteristic} matingParts={matingParts} />
           <div className="flex flex-wrap gap-3">
