@@ -12,7 +12,6 @@ export function useLive(jobId: string): void {
   const { revalidate } = useRevalidator();
   useEffect(() => {
     let timer: ReturnType<typeof setTimeout> | undefined;
-    let connectedBefore = false;
     const reload = () => {
       clearTimeout(timer);
       timer = setTimeout(() => void revalidate(), gatherMs);
@@ -20,11 +19,9 @@ export function useLive(jobId: string): void {
     const source = new EventSource("/api/events");
     source.onmessage = ({ data }: MessageEvent<string>) => {
       const event = JSON.parse(data) as { topic: string; jobId?: string };
-      // After a lost connection anything may have happened meanwhile.
-      if (event.topic === "hello") {
-        if (connectedBefore) reload();
-        connectedBefore = true;
-      } else if (event.jobId === jobId) reload();
+      // Between the page's data and the first word of the stream, or while a connection was lost,
+      // anything may have happened.
+      if (event.topic === "hello" || event.jobId === jobId) reload();
     };
     return () => {
       clearTimeout(timer);
