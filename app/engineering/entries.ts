@@ -1,3 +1,4 @@
+import { parseQuantity } from "../units.ts";
 import { describeCalculation, findCalculation } from "./registry.ts";
 import { threadDesignations } from "./thread-table.ts";
 import { materials } from "./tables/materials.ts";
@@ -49,15 +50,18 @@ function kindOf(key: string, { type, enum: choices }: Property): Entry["kind"] {
   return type === "string" ? "text" : "number";
 }
 
-/** What was typed, as the inputs of the calculation: blanks left out, numbers as numbers, "62 .. 62.03" or "62; 62.03" as a pair. */
+/**
+ * What was typed, as the inputs of the calculation: blanks left out, numbers as numbers in the
+ * input's unit ("7/8 in", "45 ksi" and "12,7" are understood), "62 .. 62.03" or "62 to 62.03" as a pair.
+ */
 export function readEntries(kind: string, typed: Record<string, string>): Record<string, unknown> {
   const inputs: Record<string, unknown> = {};
-  for (const { key, kind: shape } of entriesOf(kind)) {
+  for (const { key, kind: shape, unit } of entriesOf(kind)) {
     const text = (typed[key] ?? "").trim();
     if (shape === "tick") inputs[key] = text !== "";
     else if (text === "") continue;
-    else if (shape === "number") inputs[key] = readNumber(text);
-    else if (shape === "pair") inputs[key] = text.split(/\s*(?:\.\.|;|\bto\b)\s*/).map(readNumber);
+    else if (shape === "number") inputs[key] = readNumber(text, unit);
+    else if (shape === "pair") inputs[key] = readPair(text, unit);
     else inputs[key] = text;
   }
   return inputs;
@@ -68,8 +72,15 @@ export function entryText(value: unknown): string {
   return Array.isArray(value) ? value.join(" to ") : value === undefined || value === null ? "" : String(value);
 }
 
+function readPair(text: string, unit: string): Array<number | string> {
+  const ends = text.split(/\s*(?:\.\.|;|\bto\b)\s*/);
+  // "1/8 to 3/16 in" means inches twice.
+  const said = /[a-z°"″].*$/i.exec(ends.at(-1)!)?.[0] ?? "";
+  return ends.map((end) => readNumber(/[a-z°"″]/i.test(end) ? end : `${end} ${said}`, unit));
+}
+
 // What is no number is handed on as it is: the calculation refuses it by its key.
-function readNumber(text: string): number | string {
-  const plain = text.replace(",", ".");
-  return /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(plain) ? Number(plain) : text;
+function readNumber(text: string, unit: string): number | string {
+  const parsed = parseQuantity(text, unit);
+  return parsed.ok ? parsed.value : text;
 }

@@ -16,12 +16,13 @@ export type RunOutcome = { ok: true; result: CalculationResult; inputs: Record<s
 export function runCalculation(kind: string, inputs: unknown): RunOutcome {
   const calculation = findCalculation(kind);
   if (!calculation) return { ok: false, errors: { kind: [`no calculation is called ${kind}`] } };
+  if (typeof inputs !== "object" || inputs === null || Array.isArray(inputs)) return { ok: false, errors: { inputs: ["must be an object with a value for each key"] } };
   const parsed = z.strictObject(calculation.inputs.shape).safeParse(inputs);
   if (!parsed.success) {
     const errors: Record<string, string[]> = {};
     for (const issue of parsed.error.issues) {
       const keys = issue.code === "unrecognized_keys" ? issue.keys : [String(issue.path[0] ?? "inputs")];
-      for (const key of keys) (errors[key] ??= []).push(issue.code === "unrecognized_keys" ? "is not an input of this calculation" : issue.message);
+      for (const key of keys) (errors[key] ??= []).push(issue.code === "unrecognized_keys" ? unknownKey(key, Object.keys(calculation.inputs.shape)) : issue.message);
     }
     return { ok: false, errors };
   }
@@ -33,7 +34,19 @@ export function runCalculation(kind: string, inputs: unknown): RunOutcome {
   }
 }
 
+/** True for a calculation that never passes or fails: it can't be asked of a part at the gate. */
+export function isInformationOnly(kind: string): boolean {
+  return findCalculation(kind)?.informationOnly ?? false;
+}
+
+/** A key that is no input: in another unit or spelling it often is one. */
+function unknownKey(key: string, known: string[]): string {
+  const stem = (text: string) => text.split("_")[0]!.toLowerCase();
+  const meant = known.find((one) => stem(one) === stem(key));
+  return `is not an input of this calculation${meant ? `: did you mean ${meant}?` : ""}`;
+}
+
 /** What `calculate --list` prints of a calculation: its inputs as JSON schema, with units and defaults in it. */
 export function describeCalculation({ kind, title, inputs, sources }: Calculation) {
-  return { kind, title, inputs: z.toJSONSchema(inputs, { io: "input" }), sources };
+  return { kind, title, inputs: z.toJSONSchema(z.strictObject(inputs.shape), { io: "input" }), sources };
 }

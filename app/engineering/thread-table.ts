@@ -8,6 +8,8 @@ export interface Thread {
   system: "metric" | "unified";
   diameter: number;
   pitch: number;
+  screwClass: "6g" | "2A";
+  holeClass: "6H" | "2B";
   /** Least major and pitch diameter of the screw (6g or 2A). */
   screwMajorMin: number;
   screwPitchMin: number;
@@ -20,16 +22,29 @@ export interface Thread {
 const inch = (value: number) => value * MM_PER_INCH;
 
 const threads: readonly Thread[] = [
-  ...metricThreads.map((row): Thread => ({ designation: row.thread, system: "metric", diameter: row.diameter, pitch: row.pitch, screwMajorMin: row.majorMin6g, screwPitchMin: row.pitchMin6g, holeMinorMax: row.minorMax6H, holePitchMax: row.pitchMax6H, tapDrill: row.tapDrill })),
-  ...unifiedThreads.map((row): Thread => ({ designation: row.thread, system: "unified", diameter: inch(row.diameter), pitch: MM_PER_INCH / row.threadsPerInch, screwMajorMin: inch(row.majorMin2A), screwPitchMin: inch(row.pitchMin2A), holeMinorMax: inch(row.minorMax2B), holePitchMax: inch(row.pitchMax2B), tapDrill: inch(row.tapDrill) })),
+  ...metricThreads.map((row): Thread => ({ designation: row.thread, system: "metric", diameter: row.diameter, pitch: row.pitch, screwClass: "6g", holeClass: "6H", screwMajorMin: row.majorMin6g, screwPitchMin: row.pitchMin6g, holeMinorMax: row.minorMax6H, holePitchMax: row.pitchMax6H, tapDrill: row.tapDrill })),
+  ...unifiedThreads.map((row): Thread => ({ designation: row.thread, system: "unified", diameter: inch(row.diameter), pitch: MM_PER_INCH / row.threadsPerInch, screwClass: "2A", holeClass: "2B", screwMajorMin: inch(row.majorMin2A), screwPitchMin: inch(row.pitchMin2A), holeMinorMax: inch(row.minorMax2B), holePitchMax: inch(row.pitchMax2B), tapDrill: inch(row.tapDrill) })),
 ];
 
 export const threadDesignations: readonly string[] = threads.map(({ designation }) => designation);
 
-const plain = (text: string) => text.toLowerCase().replace(/[\s#×*]/g, (c) => (c === "×" || c === "*" ? "x" : "")).replace(/-(6h|6g|2a|2b)$/, "");
+/** "M6 × 1,00 - 6H", '#10-32 UNF-2B' and 'No. 10-32' as the tables write them: "m6x1", "10-32unf", "10-32". */
+function plain(text: string): string {
+  return text
+    .toLowerCase()
+    .replace(/[×*]/g, "x")
+    .replace(/,/g, ".")
+    .replace(/[\s-]+(6h(\/6g)?|6g|2b(\/2a)?|2a)$/, "")
+    .replace(/^no\.?(?=\s*\d)/, "")
+    .replace(/[\s#"″]/g, "")
+    .replace(/^(m[\d.]+x)-?/, "$1")
+    .replace(/(\d\.\d*?)0+(?=x|$)/g, "$1")
+    .replace(/\.(?=x|$)/g, "");
+}
 
 /**
- * The thread of this designation: "M6x1", "M6", "1/4-20 UNC", "10-32". Coarse where no pitch is said.
+ * The thread of this designation: "M6x1", "M6", "1/4-20 UNC", "#10-32". Coarse where no pitch is said;
+ * a class behind it (6H, 2B) is read over.
  *
  * @returns undefined for a thread outside the tables: nothing is made up between rows
  */

@@ -1,6 +1,7 @@
-// Limits and fits, ISO 286-1:2010 tables 1 to 5, as transcribed in a stored public table and compared
-// by program. Deviations in micrometres; each column is a range of size over the bound before it, up
-// to and including its own.
+// Limits and fits, ISO 286-1:2010 tables 1 to 5, transcribed from a public table of the standard
+// (github.com WaldekS710/isoFits, read as a reference for figures) and compared with it by program;
+// its IT15 for 30 to 50 mm is a misprint there (100 for 1000). Deviations in micrometres; each column
+// is a range of size over the bound before it, up to and including its own.
 
 export const sizeBounds_mm = [3, 6, 10, 18, 30, 50, 80, 120, 180, 250, 315, 400, 500];
 
@@ -40,7 +41,26 @@ export const shaftDeviation_um: Record<string, readonly number[]> = {
   p: [6, 12, 15, 18, 22, 26, 32, 37, 43, 50, 56, 62, 68],
 };
 
+/** Lower deviation ei of j5 and j6, and of j7. */
+export const shaftJ_um: Record<string, readonly number[]> = {
+  j5: [-2, -2, -2, -3, -4, -5, -7, -9, -11, -13, -16, -18, -20],
+  j6: [-2, -2, -2, -3, -4, -5, -7, -9, -11, -13, -16, -18, -20],
+  j7: [-4, -4, -5, -6, -8, -10, -12, -15, -18, -21, -26, -28, -32],
+};
+/** Upper deviation ES of J6, J7, J8. */
+export const holeJ_um: Record<string, readonly number[]> = {
+  J6: [2, 5, 5, 6, 8, 10, 13, 16, 18, 22, 25, 29, 33],
+  J7: [4, 6, 8, 10, 12, 14, 18, 22, 26, 30, 36, 39, 43],
+  J8: [6, 10, 12, 15, 20, 24, 28, 34, 41, 47, 55, 60, 66],
+};
+
 export const subBounds_mm = [3, 6, 10, 14, 18, 24, 30, 40, 50, 65, 80, 100, 120, 140, 160, 180, 200, 225, 250, 280, 315, 355, 400, 450, 500];
-/** Lower deviation ei, in the finer ranges. */
-export const shaftR_um = [10, 15, 19, 23, 23, 28, 28, 34, 34, 41, 43, 51, 54, 63, 65, 68, 77, 80, 84, 94, 98, 108, 114, 126, 132];
-export const shaftS_um = [14, 19, 23, 28, 28, 35, 35, 43, 43, 53, 59, 71, 79, 92, 100, 108, 122, 130, 140, 158, 170, 190, 208, 232, 252];
+/** In the finer ranges: c upper deviation es; r, s, t, u, x lower deviation ei. Null: the standard has none at this size. */
+export const shaftFineDeviation_um: Record<string, ReadonlyArray<number | null>> = {
+  c: [-60, -70, -80, -95, -95, -110, -110, -120, -130, -140, -150, -170, -180, -200, -210, -230, -240, -260, -280, -300, -330, -360, -400, -440, -480],
+  r: [10, 15, 19, 23, 23, 28, 28, 34, 34, 41, 43, 51, 54, 63, 65, 68, 77, 80, 84, 94, 98, 108, 114, 126, 132],
+  s: [14, 19, 23, 28, 28, 35, 35, 43, 43, 53, 59, 71, 79, 92, 100, 108, 122, 130, 140, 158, 170, 190, 208, 232, 252],
+  t: [null, null, null, null, null, null, 41, 48, 54, 66, 75, 91, 104, 122, 134, 146, 166, 180, 196, 218, 240, 268, 294, 330, 360],
+  u: [18, 23, 28, 33, 33, 41, 48, 60, 70, 87, 102, 124, 144, 170, 190, 210, 236, 258, 284, 315, 350, 390, 435, 490, 540],
+  x: [20, 28, 34, 40, 45, 54, 64, 80, 97, 122, 146, 178, 210, 248, 280, 310, 350, 385, 425, 475, 525, 590, 660, 740, 820],
+};
