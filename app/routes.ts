@@ -4,6 +4,8 @@ import { index, layout, prefix, route, type RouteConfig } from "@react-router/de
 export default [
   route("sign-in", "routes/sign-in.tsx"),
   route("sign-in/link/:token", "routes/sign-in-link.tsx"),
+  route("sign-in/github", "routes/sign-in-github.tsx"),
+  route("sign-in/github/callback", "routes/sign-in-github.tsx", { id: "sign-in-github-callback" }),
   route("prove", "routes/prove.tsx"),
   route("prove/link/:token", "routes/prove-link.tsx"),
   route("account", "routes/account.tsx"),

@@ -12,6 +12,9 @@ export const sessionCookie = createCookie(overTls ? "__Host-spotblue" : "spotblu
   secrets: env.SESSION_SECRETS,
 });
 
+/** Where somebody wanted to go when they went to GitHub to sign in. */
+export const githubNextCookie = createCookie("spotblue-github-next", { httpOnly: true, secure: overTls, sameSite: "lax", path: "/sign-in", maxAge: 600, secrets: env.SESSION_SECRETS });
+
 export type Theme = "system" | "paper" | "blueprint";
 export type Units = "mm" | "in";
 

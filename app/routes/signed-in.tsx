@@ -19,7 +19,6 @@ export async function loader({ request, context }: Route.LoaderArgs) {
   const nav: NavWord[] = [{ to: "/", label: "Today", end: true }, { to: "/jobs", label: "Jobs" }];
   if (can(viewer.roles, "customer:read")) nav.push({ to: "/customers", label: "Customers" });
   if (can(viewer.roles, "equipment:write")) nav.push({ to: "/shop", label: "Shop" });
-  if (can(viewer.roles, "people:manage")) nav.push({ to: "/people", label: "People" });
   if (can(viewer.roles, "logbook:read")) nav.push({ to: "/logbook", label: "Logbook" });
 
   const menu: MenuEntry[] = [];
