@@ -1,4 +1,3 @@
-import { CautionLine } from "#app/components/caution.tsx";
 import { GateMark } from "#app/components/gate-marks.tsx";
 import { Section } from "#app/components/sheet.tsx";
 import type { CalculationResult } from "#app/engineering/calculation.ts";
@@ -44,7 +43,11 @@ export function CalculationResultView({ result }: { result: CalculationResult })
       <Section title="Sources">
         <ul className="list-disc pl-5 text-soft">{sources.map((text) => <li key={text}>{text}</li>)}</ul>
       </Section>
-      <CautionLine />
+      {result.cautions.length > 0 && (
+        <Section title="Cautions">
+          <ul className="list-disc pl-5">{result.cautions.map((text) => <li key={text}>{text}</li>)}</ul>
+        </Section>
+      )}
     </div>
   );
 }
