@@ -86,7 +86,7 @@ test("a STEP dropped on a new part is measured, drawn, and its faces are named",
   await page.mouse.click(box.x + box.width / 2 - 20, box.y + box.height / 2);
   await expect(said).toContainText("Press the second");
   await page.mouse.click(box.x + box.width / 2 + 20, box.y + box.height / 2);
-  await expect(said).toContainText(/^\d+\.\d\d mm; along x \d+\.\d\d, y 0\.00, z 0\.00, read from the view/);
+  await expect(said).toContainText(/^\d+\.\d\d mm; along x \d+\.\d\d, y \d+\.\d\d, z \d+\.\d\d, read from the view/);
 });
 
 test("the sheet of the demo's flange: turned by keys, cut, quiet when idle, gone when left", async ({ people }) => {
